@@ -1,0 +1,1 @@
+"""Transient thermal simulation of induction-heated workpieces."""

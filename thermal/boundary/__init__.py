@@ -1,0 +1,1 @@
+"""Heat that leaves the surface: radiation, convection, the lining of the coil."""

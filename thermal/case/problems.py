@@ -1,0 +1,186 @@
+"""Mistakes in a case file as finished lines: where, what was read, what is allowed, what is near."""
+
+import difflib
+import sys
+from typing import Any
+
+from pydantic import BaseModel, ValidationError
+from pydantic_core import ErrorDetails
+
+from thermal.case import schema
+from thermal.case.locate import Path, line_of
+
+_STAGES: dict[str, type[BaseModel]] = {
+    "heat": schema.Heat,
+    "hold": schema.Hold,
+    "transfer": schema.Transfer,
+}
+_SHAPES: dict[str, type[BaseModel]] = {
+    "cylinder": schema.Cylinder,
+    "tube": schema.Tube,
+    "plate": schema.Plate,
+}
+_TABLES: dict[str, type[BaseModel]] = {
+    "coil": schema.CoilSection,
+    "lining": schema.LiningSection,
+    "supply": schema.SupplySection,
+    "surroundings": schema.SurroundingsSection,
+    "numerics": schema.NumericsSection,
+    "output": schema.OutputSection,
+}
+_EXAMPLES = {
+    "format": "format = 1",
+    "workpiece": "a [workpiece] table",
+    "schedule": "a [[schedule]] table",
+    "shape": 'shape = "cylinder"',
+    "stage": 'stage = "heat"',
+    "material": 'material = "steel-c45"',
+    "drive": 'drive = { supply_power = "60 kW" }',
+    "at": 'at = { surface = "1150 °C" }',
+    "turns": "turns = 18",
+    "tube": 'tube = "10 mm"',
+    "wall": 'wall = "5 mm"',
+    "thickness": 'thickness = "20 mm"',
+    "depth": 'depth = "5 mm"',
+    "name": 'name = "TC1"',
+    "duration": 'duration = "10 s"',
+    "power": 'power = "60 kW"',
+    "frequency": 'frequency = "3 kHz"',
+}
+
+
+Problem = tuple[Path, str]
+"""Path of the key and what is wrong with it."""
+
+_LAST = sys.maxsize
+"""Stands for the line of what is nowhere in the file."""
+
+
+class Places:
+    """Where a path was written: its line in the file, or the override that set it.
+
+    Parameters
+    ----------
+    lines : path -> line of the file.
+    overridden : paths that were set from outside the file.
+    """
+
+    def __init__(self, lines: dict[Path, int], overridden: tuple[Path, ...]) -> None:
+        self._lines = lines
+        self._overridden = overridden
+
+    def finished(self, problems: list[Problem]) -> list[str]:
+        """Lines like "line 7   workpiece.diameter: ...", overrides first, then in the order of the file."""
+        return [line for _, line in sorted(map(self._finished, problems), key=lambda entry: entry[0])]
+
+    def _finished(self, problem: Problem) -> tuple[int, str]:
+        path, sentence = problem
+        text = f"{'.'.join(str(part) for part in path)}: {sentence}"
+        if any(path[: len(over)] == over for over in self._overridden):
+            return 0, f"{'--set':<9}{text}"
+        line = line_of(path, self._lines)
+        return (_LAST, text) if line is None else (line, f"{f'line {line}':<9}{text}")
+
+
+def near(word: str, known: list[str]) -> str:
+    """The end of a refusal: the nearest known word, or all of them."""
+    nearest = _nearest(word, known)
+    return f"did you mean '{nearest}'?" if nearest else f"known here: {', '.join(known)}"
+
+
+def _nearest(word: str, known: list[str]) -> str | None:
+    """Known word that looks like it; upper and lower case count as the same."""
+    folded = {name.casefold(): name for name in known}
+    hits = difflib.get_close_matches(word.casefold(), list(folded), n=1)
+    return folded[hits[0]] if hits else None
+
+
+def problems_of(error: ValidationError, document: dict[str, Any]) -> list[Problem]:
+    """Path and sentence of every mistake the schema found.
+
+    Parameters
+    ----------
+    error : ValidationError
+        What the schema raised.
+    document : dict
+        What was validated, to name the keys a table of that kind may have.
+    """
+    found = error.errors()
+    misspelt = {
+        (*path[:-1], _nearest(str(path[-1]), _allowed(path[:-1], document)))
+        for path in (_without_tags(one["loc"]) for one in found if one["type"] == "extra_forbidden")
+    }
+    return [
+        _translated(one, document)
+        for one in found
+        if not (one["type"] == "missing" and _without_tags(one["loc"]) in misspelt)
+    ]
+
+
+def _translated(details: ErrorDetails, document: dict[str, Any]) -> Problem:
+    path = _without_tags(details["loc"])
+    context = details.get("ctx", {})
+    value = details["input"]
+    match details["type"]:
+        case "case":
+            key = context["key"]
+            return (path if key is None else (*path, key)), context["sentence"]
+        case "value_error":
+            return path, str(context["error"])
+        case "missing":
+            return path, _missing(path)
+        case "extra_forbidden":
+            return path, f"unknown key, {near(str(path[-1]), _allowed(path[:-1], document))}"
+        case "union_tag_invalid" | "union_tag_not_found":
+            tag = context["discriminator"].strip("'")
+            known = list(_SHAPES if tag == "shape" else _STAGES)
+            if not isinstance(value, dict):
+                return path, f"'{value}' is not a table of keys"
+            if tag not in value:
+                return (*path, tag), _missing((*path, tag))
+            return (*path, tag), f"'{value[tag]}' is not a {tag}, {near(str(value[tag]), known)}"
+        case "literal_error":
+            accepted = context["expected"].replace("'", "").replace(" or ", ", ")
+            return path, f"'{value}' is not accepted (accepted: {accepted})"
+        case "model_type" | "model_attributes_type" | "dict_type":
+            return path, f"'{value}' is not a table of keys"
+        case "tuple_type":
+            return path, f"'{value}' is not a list" + (", write [[...]]" if len(path) == 1 else "")
+        case "string_type":
+            return path, f"'{value}' is not a text, put it in quotes"
+        case _:
+            return path, details["msg"]
+
+
+def _without_tags(loc: tuple[int | str, ...]) -> Path:
+    """Path as written in the file: without the tag of a shape or stage that the schema puts in."""
+    if loc[0] == "workpiece" and len(loc) > 1:
+        return (loc[0], *loc[2:])
+    if loc[0] == "schedule" and len(loc) > 2:
+        return (*loc[:2], *loc[3:])
+    return loc
+
+
+def _missing(path: Path) -> str:
+    key = str(path[-1])
+    example = _EXAMPLES.get(key, f'{key} = "50 mm"')
+    return f"missing, write for example {example}"
+
+
+def _allowed(path: Path, document: dict[str, Any]) -> list[str]:
+    """Keys the table at a path may have."""
+    model: type[BaseModel]
+    match path:
+        case ():
+            model = schema.CaseFile
+        case ("workpiece",):
+            model = _SHAPES[document["workpiece"]["shape"]]
+        case ("schedule", int(index)):
+            model = _STAGES[document["schedule"][index]["stage"]]
+        case ("reading", int()):
+            model = schema.Reading
+        case ("schedule", int(), "drive"):
+            model = schema.Drive
+        case _:
+            model = _TABLES[str(path[0])]
+    return list(model.model_fields)

@@ -1,0 +1,142 @@
+"""One time step: the Rosenbrock W-method ROS34PW2 with energy accounts carried as quadratures.
+
+J. Rang, L. Angermann, BIT Numer. Math. 45 (2005) 761: 4 stages, order 3(2), L-stable (coefficients from memory; a
+test confirms order 3 with an arbitrary matrix). A W-method keeps its order whatever matrix is used, so the matrix
+holds conduction and losses only, and the heat source is evaluated at every stage.
+"""
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+from scipy.linalg.lapack import dgttrf, dgttrs
+
+from thermal.errors import NoConvergence
+from thermal.interfaces import Array
+
+GAMMA_DIAGONAL = 0.43586652150845900
+ALPHA = (
+    (),
+    (2.0 * GAMMA_DIAGONAL,),
+    (0.84457060015369423, -0.11299064236484185),
+    (0.0, 0.0, 1.0),
+)
+GAMMA = (
+    (),
+    (-2.0 * GAMMA_DIAGONAL,),
+    (-0.90338057013044082, 0.054180672388095326),
+    (0.24212380706095346, -1.2232505839045147, 0.54526025533510214),
+)
+B = (0.24212380706095346, -1.2232505839045147, 1.5452602553351020, GAMMA_DIAGONAL)
+B_EMBEDDED = (0.37810903145819369, -0.096042292212423178, 0.5, 0.5 * GAMMA_DIAGONAL)
+STAGES = 4
+
+
+@dataclass(frozen=True, slots=True)
+class Rates:
+    """Right-hand side at one state.
+
+    heat_flow : (n,) [W] net into each cell ; accounts : (p,) [W] what the energy accounts gain ;
+    extra : (e,) rates of further unknowns that are not stiff (the memory of a controller).
+    """
+
+    heat_flow: Array
+    accounts: Array
+    extra: Array
+
+
+@dataclass(frozen=True, slots=True)
+class Matrix:
+    """The approximate Jacobian of heat_flow: V d/dt -> -(K dT/dH + loss slopes), frozen at the start of the step.
+
+    conductance : (m,) [W/K] ; dT_dH : (n,) ; slopes : per account that depends on the state, its index, the cells
+    and d(account)/dH (s,) [W m3/J] there.
+    """
+
+    conductance: Array
+    dT_dH: Array
+    slopes: tuple[tuple[int, Array, Array], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Step:
+    """Outcome of one step: H (n,), gained accounts (p,) [J], extra (e,), embedded error of H (n,) [J/m3]."""
+
+    H: Array
+    gained: Array
+    extra: Array
+    error: Array
+
+
+def rosenbrock_step(
+    H: Array,
+    extra: Array,
+    first: Rates,
+    matrix: Matrix,
+    volume: Array,
+    step: float,
+    rates: Callable[[Array, Array], Rates],
+) -> Step:
+    """Advance H by one step.
+
+    H : (n,) [J/m3] ; extra : (e,) ; first : rates at (H, extra) ; volume : (n,) [m3] ; step : [s] ;
+    rates : (H, extra) -> Rates.
+
+    The accounts are advanced with the same weights and the same linearised losses as the cells, so the sum over the
+    cells of V dH equals the sum of the accounts to round-off.
+
+    Raises
+    ------
+    NoConvergence : the matrix is singular (a property is not a number).
+    """
+    shift = step * GAMMA_DIAGONAL
+    out = matrix.conductance * shift
+    lower = -out * matrix.dT_dH[:-1]
+    upper = -out * matrix.dT_dH[1:]
+    diagonal = volume.copy()
+    diagonal[:-1] -= lower
+    diagonal[1:] -= upper
+    for _, cells, slope in matrix.slopes:
+        diagonal[cells] += shift * slope
+    factors = dgttrf(lower, diagonal, upper)
+    if factors[-1] != 0:
+        raise NoConvergence("the heat equations of the section could not be solved (singular matrix)")
+    *lu, _ = factors
+
+    increments: list[Array] = []
+    gained: list[Array] = []
+    memory: list[Array] = []
+    for i in range(STAGES):
+        if i == 0:
+            here = first
+        else:
+            H_stage, extra_stage = H, extra
+            for a, k, j in zip(ALPHA[i], increments, memory, strict=False):
+                if a:
+                    H_stage = H_stage + a * k
+                    extra_stage = extra_stage + a * j
+            here = rates(H_stage, extra_stage)
+        carried: Array | None = None
+        for g, k in zip(GAMMA[i], increments, strict=False):
+            carried = g * k if carried is None else carried + g * k
+        right = step * here.heat_flow
+        if carried is not None:
+            carried /= GAMMA_DIAGONAL
+            right += volume * carried
+        solved, info = dgttrs(*lu, right)
+        if info != 0:
+            raise NoConvergence("the heat equations of the section could not be solved")
+        account = step * here.accounts
+        for index, cells, slope in matrix.slopes:
+            account[index] += shift * float(slope @ solved[cells])
+        increments.append(solved if carried is None else solved - carried)
+        gained.append(account)
+        # The further unknowns are treated explicitly: their row of the matrix is zero.
+        memory.append(step * here.extra)
+    H_new, error = H, np.zeros_like(H)
+    for b, b_embedded, k in zip(B, B_EMBEDDED, increments, strict=True):
+        H_new = H_new + b * k
+        error += (b - b_embedded) * k
+    total = sum(b * a for b, a in zip(B, gained, strict=True))
+    extra_new = extra + sum(b * j for b, j in zip(B, memory, strict=True))
+    return Step(H_new, np.asarray(total), np.asarray(extra_new), error)

@@ -1,0 +1,122 @@
+"""A coil of finite length around a one-dimensional section: from coil current to field and back to impedance.
+
+The flux path is split in two reluctances: inside the bore (workpiece and gap, plus the empty part of the bore where
+the workpiece is shorter than the coil) and outside. The outside one is fixed by the air coil: Nagaoka's factor K
+gives R_e = (1/K - 1) l/(mu_0 A_bore). The result is an average over the length of the workpiece.
+"""
+
+import math
+from dataclasses import dataclass
+
+import numpy as np
+import numpy.typing as npt
+
+from thermal.constants import MU_0
+from thermal.eddy.radial import Magnetics, Profile, RadialSolver
+from thermal.errors import NoConvergence
+from thermal.geometry.mesh import Mesh
+from thermal.interfaces import EddyField, FieldOf, PropertyOf
+
+Array = npt.NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class FluxPath:
+    """The coil as the workpiece meets it.
+
+    turns ; length : [m] of the coil ; bore_area : [m2] up to the current sheet ; nagaoka : K of that sheet ;
+    filled : [m] length of the bore that holds metal ; enclosed : [m2] inside the outer surface of the workpiece, a
+    bore included ; perimeter : [m] of that surface.
+    """
+
+    turns: float
+    length: float
+    bore_area: float
+    nagaoka: float
+    filled: float
+    enclosed: float
+    perimeter: float
+
+    def flux_area(self, impedance: complex, frequency: float) -> complex:
+        """Flux per mu_0 H [m2] through the filled part of the bore at a surface impedance E/H [ohm]."""
+        return self.bore_area - self.enclosed + self.perimeter * impedance / (2j * math.pi * frequency * MU_0)
+
+    def reluctance(self, flux_area: complex) -> complex:
+        """Reluctance of the whole path [1/H]."""
+        inside = self.filled / (MU_0 * flux_area) + (self.length - self.filled) / (MU_0 * self.bore_area)
+        outside = (1.0 / self.nagaoka - 1.0) * self.length / (MU_0 * self.bore_area)
+        return inside + outside
+
+    def field_per_ampere(self, impedance: complex, frequency: float) -> complex:
+        """Surface field per coil current [1/m], a mean over the filled length."""
+        area = self.flux_area(impedance, frequency)
+        return self.turns / (MU_0 * area * self.reluctance(area))
+
+    def coil_impedance(self, impedance: complex, frequency: float) -> complex:
+        """Impedance [ohm] at the coil terminals of flux and workpiece, without the copper."""
+        reluctance = self.reluctance(self.flux_area(impedance, frequency))
+        return 2j * math.pi * frequency * self.turns**2 / reluctance
+
+
+@dataclass(frozen=True)
+class SectionSource:
+    """Heat source of a section in an axial field (plays the HeatSource role).
+
+    Parameters
+    ----------
+    mesh, resistivity, magnetics : the workpiece.
+    path : the coil around it, or None where the surface field itself is the excitation.
+    heated_share : length of the workpiece inside the coil over its length; heat is averaged over the whole of it.
+    """
+
+    mesh: Mesh
+    solver: RadialSolver
+    resistivity: PropertyOf
+    magnetics: Magnetics
+    path: FluxPath | None
+    heated_share: float = 1.0
+
+    def at(self, T: Array) -> FieldOf:
+        """Field as a function of excitation and frequency at cell temperatures T (n,) [K].
+
+        The excitation is the coil current, or without a coil the surface field; rms.
+        """
+        resistivity = self.resistivity(T)
+        factor = self.magnetics.factor(T)
+        # A section without permeability left responds in proportion: one solve serves every excitation.
+        proportional = self.magnetics.linear or not factor.any()
+        known: dict[float, Profile] = {}
+
+        def field_of(excitation: float, frequency: float, guess: EddyField | None) -> EddyField:
+            if proportional and frequency in known:
+                profile, solves = known[frequency], 0
+                H_surface = self._surface_field(profile.impedance, excitation, frequency)
+            else:
+                start = guess.mu_r if guess is not None else self._first_mu(factor, excitation)
+                profile, H_surface, solves = self.solver.settled(
+                    resistivity,
+                    self.magnetics,
+                    factor,
+                    frequency,
+                    lambda impedance: self._surface_field(impedance, excitation, frequency),
+                    start,
+                )
+                known[frequency] = profile
+            heat = profile.heat * (H_surface**2 * self.heated_share)
+            power = float(heat @ self.mesh.volume)
+            if not math.isfinite(power):
+                raise NoConvergence("the field in the workpiece is not a number")
+            at_terminals = self.path.coil_impedance(profile.impedance, frequency) if self.path else 0j
+            return EddyField(heat, power, at_terminals, H_surface, profile.mu_r, solves)
+
+        return field_of
+
+    def _surface_field(self, impedance: complex, excitation: float, frequency: float) -> float:
+        if self.path is None:
+            return excitation
+        return abs(self.path.field_per_ampere(impedance, frequency)) * excitation
+
+    def _first_mu(self, factor: Array, excitation: float) -> Array:
+        H = excitation * (self.path.turns / self.path.length if self.path else 1.0)
+        peak = np.full(factor.shape, math.sqrt(2.0) * H)
+        return np.asarray(1.0 + factor * self.magnetics.effective_susceptibility(peak))

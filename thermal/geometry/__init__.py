@@ -1,0 +1,1 @@
+"""Where the metal is: meshes, grading, coils and their air-core inductance."""

@@ -1,0 +1,247 @@
+"""Steps of one stage: rates at a state, step-length control, and landing on a stop.
+
+Knows the parts of a Setup only through their roles.
+"""
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+
+from thermal.conduction.assemble import FaceState
+from thermal.conduction.step import Matrix, Rates, Step, rosenbrock_step
+from thermal.errors import NoConvergence
+from thermal.interfaces import Array, EddyField, OperatingPoint
+from thermal.schedule import Stage
+from thermal.setup import Setup
+
+GROWTH_AT_MOST = 4.0
+SHRINK_AT_MOST = 0.2
+SAFETY = 0.85
+STEP_AT_LEAST = 1e-9
+LANDING = 1e-3
+"""A stop is met within this many kelvin."""
+
+ELECTRICAL = ("supply", "coil", "tank")
+
+
+@dataclass(frozen=True)
+class Moment:
+    """The workpiece at one instant, with everything that follows from its enthalpy.
+
+    H, T : (n,) ; extended : (n + 2,) [K] core, cells, surface ; memory : of the control [W] ; faces : face -> state ;
+    field, point ; rates ; matrix : where a step may start here.
+    """
+
+    H: Array
+    T: Array
+    extended: Array
+    memory: Array
+    faces: dict[str, FaceState]
+    field: EddyField
+    point: OperatingPoint
+    rates: Rates
+    matrix: Matrix | None
+
+
+class Stepper:
+    """Advances the workpiece within one stage."""
+
+    def __init__(self, setup: Setup, stage: Stage, T_peak: dict[str, Array]) -> None:
+        self.setup = setup
+        self.stage = stage
+        self.T_peak = T_peak
+        self.losses = setup.losses[stage.place]
+        self.accounts = account_names(setup)
+        self._loss_rows = {
+            name: [self.accounts.index(loss_account(face, loss.name)) for loss in losses]
+            for face, losses in self.losses.items()
+            for name in [face]
+        }
+        n = setup.section.mesh.volume.size
+        self._idle_field = EddyField(np.zeros(n), 0.0, 0j, 0.0, np.ones(n), 0)
+        nothing = 0.0 if setup.has_coil else float("nan")
+        self._idle_point = OperatingPoint(
+            setup.frequency, nothing, nothing, nothing, nothing, 0.0, float("nan"), None, None
+        )
+        self.field_solves = 0
+
+    def moment(
+        self,
+        H: Array,
+        memory: Array,
+        guess: tuple[OperatingPoint, EddyField] | None,
+        may_start: bool,
+    ) -> Moment:
+        """Everything that follows from H (n,) [J/m3]; with the matrix where a step may start here."""
+        setup, section = self.setup, self.setup.section
+        T = section.table.temperature(H)
+        k = section.conductivity(T)
+        conductance = section.conductances(k)
+        flow = conductance * (T[:-1] - T[1:])
+        net = np.zeros_like(T)
+        net[:-1] -= flow
+        net[1:] += flow
+        dT_dH = section.table.slope(H) if may_start else None
+        accounts = np.zeros(len(self.accounts))
+        faces: dict[str, FaceState] = {}
+        slopes: list[tuple[int, Array, Array]] = []
+        lost = 0.0
+        for name, losses in self.losses.items():
+            state = section.face_state(name, losses, T, k, flow, dT_dH, self.T_peak[name])
+            cells = section.mesh.faces[name].cells
+            for row, loss in zip(self._loss_rows[name], state.loss, strict=True):
+                net[cells] -= loss
+                total = float(loss.sum())
+                accounts[row] += total
+                lost += total
+            if may_start:
+                slopes += [(row, cells, s) for row, s in zip(self._loss_rows[name], state.slope, strict=True)]
+            faces[name] = state
+        bore = faces.get("bore")
+        extended = setup.sampler.extended(
+            T, float(faces["outer"].T_surface[0]), float(bore.T_surface[0]) if bore else None
+        )
+        control = self.stage.control
+        readings = self.readings(extended) if control.needs_readings else {}
+        demand = control.demand(readings, lost, float(memory[0]))
+        if demand.kind == "off":
+            point, field = self._idle_point, self._idle_field
+        else:
+            if guess is not None and guess[1].power <= 0.0:
+                guess = None
+            point, field = setup.supply.operate(setup.source.at(T), demand, guess)
+            self.field_solves += field.solves
+        net += section.mesh.volume * field.heat
+        accounts[0] = field.power
+        if setup.has_coil:
+            accounts[1] = point.supply_power * setup.share
+            accounts[2] = point.coil_loss * setup.share
+            accounts[3] = point.tank_loss * setup.share
+        clipped = demand.kind == "off" or point.limit is not None
+        memory_rate = np.array([control.memory_rate(readings, clipped)])
+        matrix = Matrix(conductance, dT_dH, tuple(slopes)) if dT_dH is not None else None
+        rates = Rates(net, accounts, memory_rate)
+        return Moment(H, T, extended, memory, faces, field, point, rates, matrix)
+
+    def readings(self, extended: Array) -> dict[str, float]:
+        """Every reading [K] by name."""
+        sampler = self.setup.sampler
+        surface, core = float(extended[-1]), float(extended[0])
+        found = {
+            "surface": surface,
+            "core": core,
+            "mean": sampler.mean(extended[1:-1]),
+            "maximum": float(extended.max()),
+            "spread": surface - core,
+        }
+        for name, depth in self.setup.depths.items():
+            found[name] = sampler.at_depth(extended, depth)
+        return found
+
+    def try_step(self, start: Moment, step: float) -> tuple[Step, Moment]:
+        """One step of a given length from a moment; the embedded error is not judged."""
+        assert start.matrix is not None
+        recent = (start.point, start.field)
+
+        def rates(H: Array, memory: Array) -> Rates:
+            nonlocal recent
+            here = self.moment(H, memory, recent, may_start=False)
+            if here.field.power > 0.0:
+                recent = (here.point, here.field)
+            return here.rates
+
+        volume = self.setup.section.mesh.volume
+        taken = rosenbrock_step(start.H, start.memory, start.rates, start.matrix, volume, step, rates)
+        end = self.moment(taken.H, taken.extra, recent, may_start=True)
+        return taken, end
+
+    def error_of(self, taken: Step, start: Moment, end: Moment) -> float:
+        """Largest embedded error of a step [K] over the tolerance."""
+        assert start.matrix is not None and end.matrix is not None
+        slope = np.maximum(start.matrix.dT_dH, end.matrix.dT_dH)
+        return float(np.max(np.abs(taken.error) * slope)) / self.setup.tolerance
+
+    def advance(
+        self, start: Moment, step: float, most: float
+    ) -> tuple[Step, Moment, float, float, int]:
+        """The next accepted step.
+
+        step : [s] proposed ; most : [s] time left.
+        Returns the step, its end, its length, the length proposed next and the number of rejections.
+
+        Raises
+        ------
+        NoConvergence : the step would have to be shorter than a nanosecond.
+        """
+        rejected = 0
+        while True:
+            length = min(step, most)
+            if most - length < 0.1 * length:
+                length = most
+            try:
+                taken, end = self.try_step(start, length)
+                error = self.error_of(taken, start, end)
+            except NoConvergence as reason:
+                error, failure = np.inf, str(reason)
+            else:
+                failure = ""
+            if error <= 1.0:
+                factor = min(GROWTH_AT_MOST, SAFETY * max(error, 1e-6) ** (-1.0 / 3.0))
+                proposed = max(length * factor, step if length < step else 0.0)
+                return taken, end, length, proposed, rejected
+            rejected += 1
+            factor = max(SHRINK_AT_MOST, SAFETY * error ** (-1.0 / 3.0)) if np.isfinite(error) else 0.25
+            step = length * factor
+            if step < STEP_AT_LEAST:
+                hottest = float(start.T.max()) - 273.15
+                raise NoConvergence(
+                    "the time step fell below a nanosecond"
+                    f" (hottest cell {hottest:.0f} °C){': ' + failure if failure else ''}"
+                )
+
+    def first_step(self, start: Moment) -> float:
+        """Length [s] of the first step after a switch: a fraction of the tolerance at the present rate."""
+        assert start.matrix is not None
+        volume = self.setup.section.mesh.volume
+        rate = float(np.max(np.abs(start.rates.heat_flow / volume) * start.matrix.dT_dH))
+        return 5.0 * self.setup.tolerance / rate if rate > 0.0 else 1.0
+
+    def land(
+        self, start: Moment, length: float, end_distance: float, distance: Callable[[Moment], float]
+    ) -> tuple[Step, Moment, float]:
+        """Retake a step that went past a stop so that it ends on it (secant with bracketing).
+
+        length : [s] of the step that went past ; end_distance : its distance there, <= 0.
+        """
+        low, low_d = 0.0, distance(start)
+        high, high_d = length, end_distance
+        for _ in range(30):
+            trial = high - high_d * (high - low) / (high_d - low_d)
+            trial = min(max(trial, low + 0.02 * (high - low)), high - 0.001 * (high - low))
+            taken, end = self.try_step(start, trial)
+            d = distance(end)
+            if abs(d) < LANDING:
+                return taken, end, trial
+            if d > 0.0:
+                low, low_d = trial, d
+                high_d = high_d if high_d < -LANDING else -LANDING
+            else:
+                high, high_d = trial, d
+        raise NoConvergence("the moment at which the target is met could not be found")
+
+
+def loss_account(face: str, loss: str) -> str:
+    """Name of the account a loss is booked on: the loss itself outside, the face elsewhere."""
+    return f"loss: {loss if face == 'outer' else face}"
+
+
+def account_names(setup: Setup) -> list[str]:
+    """Energy accounts of a run, absorbed first, then supply, coil and tank where there is a coil, then losses."""
+    names = ["absorbed", *(ELECTRICAL if setup.has_coil else ())]
+    for faces in setup.losses.values():
+        for face, losses in faces.items():
+            for loss in losses:
+                if (account := loss_account(face, loss.name)) not in names:
+                    names.append(account)
+    return names
