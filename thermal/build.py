@@ -5,21 +5,19 @@ from collections.abc import Callable
 
 import numpy as np
 
-from materials.database import gas as find_gas
-from materials.database import get, lining, load_file
-from materials.material import Lining, Material
+from materials.material import Material
 from materials.property import Property
 from thermal.boundary.convection import constant_convection, cylinder_convection, plate_convection
 from thermal.boundary.emissivity import Emissivity, emissivity_of
 from thermal.boundary.lining import flat_lining, round_lining
 from thermal.boundary.radiation import Radiation, bare_coil_radiation, bore_radiation
 from thermal.case import Case
+from thermal.case.against_materials import lining_material, surroundings_gas, workpiece_material
 from thermal.case.schema import Heat, Hold, Plate, Tube
 from thermal.case.schema import Stage as StageWords
 from thermal.circuit.supply import CoilSupply, DirectDrive
 from thermal.circuit.winding import Winding, copper_depth, copper_resistivity, usual_wall, wall_factor
 from thermal.conduction.assemble import EnthalpyTable, Section
-from thermal.constants import ZERO_CELSIUS
 from thermal.control import Control, FixedDrive, HoldTemperature
 from thermal.eddy.exact import skin_depth
 from thermal.eddy.finite_coil import FluxPath, SectionSource
@@ -49,7 +47,7 @@ def build(case: Case) -> Setup:
     CaseError, MaterialError : what the case names does not exist or does not fit.
     NoConvergence : no operating point at the start.
     """
-    material = material_of(case)
+    material = workpiece_material(case)
     frequency = frequency_of(case)
     coil = coil_of(case, frequency)
     assumptions = list(case.defaults_used)
@@ -80,7 +78,7 @@ def build(case: Case) -> Setup:
         share=share,
         losses=_losses(case, material, coil, assumptions),
         stages=tuple(_stage(stage, material, mass) for stage in case.schedule),
-        depths={reading.name: reading.depth for reading in case.readings},
+        depths={reading.name: min(reading.depth, case.workpiece.section) for reading in case.readings},
         T_initial=case.workpiece.initial,
         T_end=T_end,
         mass=mass,
@@ -89,17 +87,6 @@ def build(case: Case) -> Setup:
         assumptions=tuple(assumptions),
         notes=tuple(notes),
     )
-
-
-def material_of(case: Case) -> Material:
-    """The workpiece's material, from the database or a file beside the case."""
-    name = case.workpiece.material
-    return load_file(case.folder / name) if name.endswith(".toml") else get(name)
-
-
-def lining_of(case: Case) -> Lining | None:
-    """The lining's material, if the coil has one."""
-    return None if case.lining is None else lining(case.lining.material)
 
 
 def frequency_of(case: Case) -> float:
@@ -176,9 +163,7 @@ def _path(case: Case, coil: Coil, mesh: Mesh, frequency: float, filled: float) -
     )
 
 
-def _supply(
-    case: Case, frequency: float, coil: Coil | None, assumptions: list[str], notes: list[str]
-) -> Supply:
+def _supply(case: Case, frequency: float, coil: Coil | None, assumptions: list[str], notes: list[str]) -> Supply:
     if coil is None or case.coil is None or case.supply is None:
         drives = [stage.drive for stage in case.schedule if isinstance(stage, Heat)]
         powers = [d.absorbed_power for d in drives if d.absorbed_power is not None]
@@ -201,9 +186,7 @@ def _supply(
     return CoilSupply(frequency, winding, words.power, words.max_current, words.max_voltage)
 
 
-def _smallest_depth(
-    case: Case, material: Material, frequency: float, supply: Supply, source_on: _SourceOn
-) -> float:
+def _smallest_depth(case: Case, material: Material, frequency: float, supply: Supply, source_on: _SourceOn) -> float:
     """Smallest skin depth of the run [m]: at the start, at the field the first heating stage begins with."""
     heats = [stage for stage in case.schedule if isinstance(stage, Heat)]
     if not heats:
@@ -289,40 +272,34 @@ def _facing_coil(case: Case, skin: Emissivity, assumptions: list[str]) -> tuple[
         )
         seen = bare_coil_radiation("radiation", skin, words.temperature, ratio, COPPER_EMISSIVITY)
         return (seen, _side_convection(case))
-    stuff = lining_of(case)
+    stuff = lining_material(case)
     assert stuff is not None
     emissivity = case.lining.emissivity if case.lining.emissivity is not None else stuff.emissivity
-    still_gas = find_gas(case.surroundings.gas)
+    still_gas = surroundings_gas(case)
     thickness = case.lining.thickness
     if flat:
         gap = room - thickness
         return (
-            flat_lining(
-                "lining", skin, still_gas, stuff.conductivity, emissivity, gap, thickness, words.temperature
-            ),
+            flat_lining("lining", skin, still_gas, stuff.conductivity, emissivity, gap, thickness, words.temperature),
         )
     radii = (piece.outline[0] / 2.0, width / 2.0 - thickness, width / 2.0)
-    return (
-        round_lining("lining", skin, still_gas, stuff.conductivity, emissivity, radii, words.temperature),
-    )
+    return (round_lining("lining", skin, still_gas, stuff.conductivity, emissivity, radii, words.temperature),)
 
 
 def _side_convection(case: Case) -> BoundaryLoss:
     piece, around = case.workpiece, case.surroundings
     if around.h is not None:
         return constant_convection("convection", around.h, around.temperature)
-    gas, speed = find_gas(around.gas), around.speed or 0.0
+    gas, speed = surroundings_gas(case), around.speed or 0.0
     if isinstance(piece, Plate):
         height = piece.width if piece.axis == "horizontal" else piece.length
         return plate_convection("convection", gas, around.temperature, height, speed)
-    return cylinder_convection(
-        "convection", gas, around.temperature, piece.outline[0], piece.length, piece.axis, speed
-    )
+    return cylinder_convection("convection", gas, around.temperature, piece.outline[0], piece.length, piece.axis, speed)
 
 
 def _end_convection(case: Case) -> BoundaryLoss:
     piece, around = case.workpiece, case.surroundings
     if around.h is not None:
         return constant_convection("convection", around.h, around.temperature)
-    gas, speed = find_gas(around.gas), around.speed or 0.0
+    gas, speed = surroundings_gas(case), around.speed or 0.0
     return plate_convection("convection", gas, around.temperature, piece.outline[1], speed)

@@ -7,22 +7,17 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from thermal.constants import ZERO_CELSIUS
 from thermal.control import HoldTemperature
-from thermal.errors import ThermalError
 from thermal.interfaces import Array, EddyField, OperatingPoint
 from thermal.results.balance import demand_closure
 from thermal.results.history import History, StageRecord, Status
 from thermal.results.recorder import Recorder
-from thermal.schedule import Stage, Stop
+from thermal.schedule import Stage
 from thermal.setup import Setup
-from thermal.stepper import Moment, Stepper, account_names
+from thermal.stepper import LANDING, Moment, Stepper, account_names
 
 SETTLED = 1e-3
 """Net heat below this share of what is absorbed counts as settled."""
-
-FASTEST = 1e6
-"""A stage that has neither met its targets nor settled after this many steps is given up."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -51,110 +46,129 @@ class State:
 def march(setup: Setup) -> Iterator[State]:
     """Run the schedule; yields a state after every accepted step and at the start of every stage.
 
-    The last state of a stage carries its record. The march ends early where the workpiece reaches setup.T_end.
+    The last state of a stage carries its record. The march ends early where a heating stage settles short of its
+    target or the workpiece reaches setup.T_end.
 
     Raises
     ------
     NoConvergence : a step could not be made.
     """
-    section = setup.section
-    mesh = section.mesh
-    H = section.table.enthalpy(np.full(mesh.volume.size, setup.T_initial))
-    H_start = H
-    T_peak = {name: np.full(face.cells.size, setup.T_initial) for name, face in mesh.faces.items()}
-    names = account_names(setup)
-    gained = np.zeros(len(names))
-    clock = 0.0
-    hottest_surface = setup.T_initial
-    recent: tuple[OperatingPoint, EddyField] | None = None
+    book = _Book(setup)
+    for number, stage in enumerate(setup.stages):
+        yield from _march_stage(setup, number, stage, book)
+        if book.over:
+            return
 
-    for number, planned in enumerate(setup.stages):
-        stage = planned
-        if isinstance(stage.control, HoldTemperature):
-            ceiling = max(hottest_surface, stage.control.set_point)
-            stage = replace(stage, control=replace(stage.control, ceiling=ceiling))
-        stepper = Stepper(setup, stage, T_peak)
-        watch = _Watch(stage)
-        begun = clock
-        now = stepper.moment(H, np.zeros(1), recent, may_start=True)
 
-        def state(
-            at: Moment,
-            step: float,
-            record: StageRecord | None,
-            rejected: int = 0,
-            *,
-            stepper: Stepper = stepper,
-            number: int = number,
-        ) -> State:
-            energy = dict(zip(names, gained.tolist(), strict=True))
-            energy["stored"] = float(mesh.volume @ (at.H - H_start))
-            losses = {
-                name: float(at.rates.accounts[i]) for i, name in enumerate(names) if name.startswith("loss: ")
-            }
-            return State(
-                clock,
-                number,
-                step,
-                at.H,
-                at.extended,
-                stepper.readings(at.extended),
-                at.field,
-                at.point,
-                losses,
-                energy,
-                record,
-                stepper.field_solves,
-                rejected,
-            )
+def _march_stage(setup: Setup, number: int, stage: Stage, book: "_Book") -> Iterator[State]:
+    if isinstance(stage.control, HoldTemperature):
+        ceiling = max(book.hottest_surface, stage.control.set_point)
+        stage = replace(stage, control=replace(stage.control, ceiling=ceiling))
+    stepper = Stepper(setup, stage, book.T_peak)
+    watch = _Watch(stage)
+    begun = book.clock
+    end_time = math.inf if stage.longest is None else begun + stage.longest
 
-        def distance(at: Moment, *, stepper: Stepper = stepper, stage: Stage = stage) -> float:
-            readings = stepper.readings(at.extended)
-            room = setup.T_end - readings["maximum"]
-            return min(room, stage.stop.distance(readings)) if stage.stop else room
+    def distance(at: Moment) -> float:
+        """To the targets or to the end of the material, whichever comes first [K]."""
+        readings = stepper.readings(at.extended)
+        room = setup.T_end - readings["maximum"]
+        return min(room, stage.stop.distance(readings)) if stage.stop else room
 
-        if stage.stop and stage.stop.distance(stepper.readings(now.extended)) <= 0.0:
-            yield state(now, 0.0, watch.record(begun, clock, "already there", met=True))
-            continue
-        yield state(now, 0.0, None)
-        step = stepper.first_step(now)
-        while True:
-            left = math.inf if stage.longest is None else begun + stage.longest - clock
-            taken, end, length, proposed, rejected = stepper.advance(now, step, left)
-            far = distance(end)
-            if far <= 0.0:
-                taken, end, length = stepper.land(now, length, far, distance)
-            finished = length >= left or far <= 0.0
-            previous = now
-            gained = gained + taken.gained
-            clock = begun + stage.longest if stage.longest is not None and length >= left else clock + length
-            now, step = end, proposed
-            for name, face_state in now.faces.items():
-                T_peak[name] = np.maximum(T_peak[name], face_state.T_surface)
-            hottest_surface = max(hottest_surface, float(now.extended[-1]))
-            watch.see(clock - length, clock, now.point.limit)
-            record = None
-            readings = stepper.readings(now.extended)
-            if finished:
-                melted = readings["maximum"] >= setup.T_end - 1e-3 - 1e-9
-                on_target = stage.stop is not None and stage.stop.distance(readings) <= 1e-3
-                if on_target:
-                    record = watch.record(begun, clock, "target", met=True)
-                elif melted:
-                    record = watch.record(begun, clock, "too hot", met=stage.stop is None)
-                else:
-                    record = watch.record(begun, clock, "time", met=stage.stop is None or stage.kind != "heat")
-            elif stage.stop and stage.kind == "heat" and watch.settled(previous, now, length, distance(now)):
-                record = watch.record(begun, clock, "settled", met=False)
-            yield state(now, length, record, rejected)
-            if record is not None:
-                if record.reason == "too hot":
-                    return
-                if not record.met and record.reason == "settled":
-                    return
-                break
-        H = now.H
-        recent = (now.point, now.field) if now.field.power > 0.0 else None
+    now = stepper.moment(book.H, np.zeros(1), book.recent, may_start=True)
+    if stage.stop and stage.stop.distance(stepper.readings(now.extended)) <= 0.0:
+        yield book.state(number, stepper, now, 0.0, watch.record(begun, begun, "already there", met=True))
+        return
+    yield book.state(number, stepper, now, 0.0, None)
+    step = stepper.first_step(now)
+    record: StageRecord | None = None
+    while record is None:
+        left = end_time - book.clock
+        taken, end, length, step, rejected = stepper.advance(now, step, left)
+        far = distance(end)
+        landed = far <= 0.0
+        if landed:
+            taken, end, length = stepper.land(now, length, far, distance)
+        timed_out = not landed and length >= left
+        book.accept(taken.gained, end, end_time if timed_out else book.clock + length)
+        watch.see(book.clock - length, book.clock, end.point.limit)
+        readings = stepper.readings(end.extended)
+        if landed:
+            if stage.stop is not None and stage.stop.distance(readings) <= LANDING:
+                record = watch.record(begun, book.clock, "target", met=True)
+            else:
+                record = watch.record(begun, book.clock, "too hot", met=stage.stop is None)
+                book.over = True
+        elif timed_out:
+            # A transfer may end before its targets; a heating stage that does has failed them.
+            met = stage.stop is None or stage.kind != "heat"
+            record = watch.record(begun, book.clock, "time", met=met)
+        elif stage.kind == "heat" and stage.stop is not None and watch.settled(end, length, distance(end)):
+            record = watch.record(begun, book.clock, "settled", met=False)
+            book.over = True
+        now = end
+        yield book.state(number, stepper, now, length, record, rejected)
+
+
+class _Book:
+    """What is carried from stage to stage: clock, enthalpy, energy accounts, hottest temperatures."""
+
+    def __init__(self, setup: Setup) -> None:
+        mesh = setup.section.mesh
+        self.H = setup.section.table.enthalpy(np.full(mesh.volume.size, setup.T_initial))
+        self.clock = 0.0
+        self.T_peak = {name: np.full(face.cells.size, setup.T_initial) for name, face in mesh.faces.items()}
+        self.hottest_surface = setup.T_initial
+        self.recent: tuple[OperatingPoint, EddyField] | None = None
+        self.over = False
+        self._volume = mesh.volume
+        self._H_start = self.H
+        self._names = account_names(setup)
+        self._gained = np.zeros(len(self._names))
+
+    def accept(self, gained: Array, end: Moment, clock: float) -> None:
+        """Take over a step."""
+        self._gained = self._gained + gained
+        self.clock = clock
+        self.H = end.H
+        for name, face in end.faces.items():
+            self.T_peak[name] = np.maximum(self.T_peak[name], face.T_surface)
+        self.hottest_surface = max(self.hottest_surface, float(end.extended[-1]))
+        if end.field.power > 0.0:
+            self.recent = (end.point, end.field)
+
+    def state(
+        self,
+        number: int,
+        stepper: Stepper,
+        at: Moment,
+        step: float,
+        record: StageRecord | None,
+        rejected: int = 0,
+    ) -> State:
+        """The present as a State."""
+        energy = dict(zip(self._names, self._gained.tolist(), strict=True))
+        energy["stored"] = float(self._volume @ (at.H - self._H_start))
+        losses = {
+            name: float(watts)
+            for name, watts in zip(self._names, at.rates.accounts.tolist(), strict=True)
+            if name.startswith("loss: ")
+        }
+        return State(
+            time=self.clock,
+            stage=number,
+            step=step,
+            H=at.H,
+            extended=at.extended,
+            readings=stepper.readings(at.extended),
+            field=at.field,
+            point=at.point,
+            losses=losses,
+            energy=energy,
+            record=record,
+            field_solves=stepper.field_solves,
+            rejected=rejected,
+        )
 
 
 class _Watch:
@@ -176,7 +190,7 @@ class _Watch:
         else:
             spans.append((start, end))
 
-    def settled(self, before: Moment, now: Moment, step: float, distance: float) -> bool:
+    def settled(self, now: Moment, step: float, distance: float) -> bool:
         """Whether the workpiece has come to rest short of its target.
 
         Net heat must be below 0.1 % of what is absorbed, and the approach to the target must die out before it gets

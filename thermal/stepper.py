@@ -162,9 +162,7 @@ class Stepper:
         slope = np.maximum(start.matrix.dT_dH, end.matrix.dT_dH)
         return float(np.max(np.abs(taken.error) * slope)) / self.setup.tolerance
 
-    def advance(
-        self, start: Moment, step: float, most: float
-    ) -> tuple[Step, Moment, float, float, int]:
+    def advance(self, start: Moment, step: float, most: float) -> tuple[Step, Moment, float, float, int]:
         """The next accepted step.
 
         step : [s] proposed ; most : [s] time left.

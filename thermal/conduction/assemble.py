@@ -84,7 +84,8 @@ class Section:
         """Surface temperature and losses of a face.
 
         With q_s the loss and q_in the flux through the inner side of the surface cell, the parabola through that
-        cell gives T_s = T_1 - (gap/k)(3 q_s + q_in)/4; solved for T_s by two Newton steps.
+        cell gives T_s = T_1 - (gap/k)(3 q_s + q_in)/4; one Newton step from q_s = q_in solves it to
+        well below a millikelvin, as the gap is thin.
 
         flow : (m,) [W] through the links, towards the outer surface ; dT_dH : (n,) where the slopes are wanted ;
         T_peak : (s,) [K] hottest so far.
@@ -99,9 +100,8 @@ class Section:
             q_in = self._flux_to(name, flow)
             base = T_cell - stiffness * (q_in / 3.0)
             surface = base - stiffness * q_in
-            for _ in range(2):
-                q, dq = total_flux(losses, surface, T_peak)
-                surface = surface - (surface - base + stiffness * q) / (1.0 + stiffness * dq)
+            q, dq = total_flux(losses, surface, T_peak)
+            surface = surface - (surface - base + stiffness * q) / (1.0 + stiffness * dq)
         loss, slope = [], []
         for each in losses:
             q, dq = each.flux(surface, T_peak)
