@@ -12,8 +12,7 @@ from materials.magnetisation import Law, describing_function
 
 Definition = Literal["constant", "normal", "froehlich-kennelly", "effective"]
 
-_H_LOWEST, _H_HIGHEST = 1.0, 1e7
-_LN_H = np.linspace(np.log(_H_LOWEST), np.log(_H_HIGHEST), 1025)
+_LN_H = np.linspace(0.0, np.log(1e7), 1025)
 _LN_H.flags.writeable = False
 
 
@@ -24,19 +23,21 @@ class Magnetics:
     The magnetisation of every temperature is that of 20 °C times one factor, so one table serves all.
     definition : how the data are given ; curie_temperature : [K] or None ;
     saturation_exponent : n of the saturation curve, see `factor` ; initial_susceptibility : towards H = 0 ;
-    susceptibility : (1025,) effective, uniform in ln H from 1 A/m to 1e7 A/m, or (1,) for a constant.
+    ln_H, susceptibility : (k,) effective susceptibility over ln of the peak field [A/m]; for a law 1025 rows
+    from 1 A/m to 1e7 A/m, one for a constant.
     """
 
     definition: Definition
     curie_temperature: float | None
     saturation_exponent: float
     initial_susceptibility: float
+    ln_H: Array
     susceptibility: Array
 
     @classmethod
     def constant(cls, mu_r: float) -> "Magnetics":
         """The same permeability at every field and temperature."""
-        return cls("constant", None, 1.0, mu_r - 1.0, np.array([mu_r - 1.0]))
+        return cls("constant", None, 1.0, mu_r - 1.0, np.zeros(1), np.array([mu_r - 1.0]))
 
     @classmethod
     def from_law(
@@ -60,7 +61,7 @@ class Magnetics:
             n of the saturation curve [-].
         """
         chi = describing_function(law, np.exp(_LN_H))
-        return cls(definition, curie_temperature, saturation_exponent, law.initial_susceptibility, chi)
+        return cls(definition, curie_temperature, saturation_exponent, law.initial_susceptibility, _LN_H, chi)
 
     @classmethod
     def from_effective(
@@ -81,9 +82,8 @@ class Magnetics:
         saturation_exponent : float
             n of the saturation curve [-].
         """
-        chi = np.interp(_LN_H, np.log(H_peak), mu_r - 1.0)
-        chi *= np.minimum(1.0, H_peak[-1] / np.exp(_LN_H))
-        return cls("effective", curie_temperature, saturation_exponent, float(mu_r[0]) - 1.0, chi)
+        chi = np.array(mu_r) - 1.0
+        return cls("effective", curie_temperature, saturation_exponent, float(chi[0]), np.log(H_peak), chi)
 
     @property
     def linear(self) -> bool:
@@ -129,7 +129,8 @@ class Magnetics:
         h = np.asarray(H_peak, dtype=np.float64)
         if self.linear:
             return np.full_like(h, self.initial_susceptibility)
-        table = np.interp(np.log(np.maximum(h, _H_LOWEST)), _LN_H, self.susceptibility)
+        lowest, highest = np.exp(self.ln_H[0]), np.exp(self.ln_H[-1])
+        table = np.interp(np.log(np.maximum(h, lowest)), self.ln_H, self.susceptibility)
         start = self.initial_susceptibility
-        near_zero = start + (table - start) * np.minimum(h / _H_LOWEST, 1.0)
-        return np.asarray(near_zero * (_H_HIGHEST / np.maximum(h, _H_HIGHEST)))
+        near_zero = start + (table - start) * np.minimum(h / lowest, 1.0)
+        return np.asarray(near_zero * (highest / np.maximum(h, highest)))

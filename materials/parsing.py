@@ -207,6 +207,8 @@ def _transformation(read: Collector, name: str, section: Section) -> Transition:
 
 def _magnetics(read: Collector, root: Section) -> Magnetics:
     section = root.section("magnetics")
+    if not any([section.has("mu_r"), section.has("curve"), section.has("law")]):
+        section.refuse("", "give mu_r, curve or law")
     if section.has("mu_r") and not section.has("curve"):
         mu_r = section.quantity("mu_r", "ratio")
         if mu_r <= 0.0:
@@ -227,8 +229,6 @@ def _magnetics(read: Collector, root: Section) -> Magnetics:
         law = FroehlichKennelly(saturation, H_k)
         read.cite(section, "magnetics", f"Froehlich-Kennelly law, {saturation:g} T, H_k {H_k:g} A/m")
         return Magnetics.from_law("froehlich-kennelly", law, curie, exponent)
-    if not section.has("curve"):
-        section.refuse("", "give mu_r, curve or law")
     curve = section.choice("curve", ("normal", "effective"))
     H = section.array("H", "magnetic_field", "H_unit")
     section.rising("H", H, section.text("H_unit"))
@@ -237,12 +237,12 @@ def _magnetics(read: Collector, root: Section) -> Magnetics:
     if curve == "effective":
         mu_r_table = section.array("mu_r", "ratio", "mu_r_unit")
         if mu_r_table.size != H.size or np.any(mu_r_table < 1.0):
-            section.refuse("mu_r", f"needs {H.size} numbers, one for each H, none below 1")
+            section.refuse("mu_r", "needs one number for each H, none below 1")
         read.cite(section, "magnetics", f"effective permeability over peak field, {H.size} points")
         return Magnetics.from_effective(H, mu_r_table, curie, exponent)
     B = section.array("B", "flux_density", "B_unit")
     if B.size != H.size or np.any(B <= MU_0 * H):
-        section.refuse("B", f"needs {H.size} numbers, one for each H, all above mu0 H")
+        section.refuse("B", "needs one number for each H, all above mu0 H")
     section.rising("B", B, section.text("B_unit"))
     initial = section.quantity("mu_r_initial", "ratio")
     if initial <= 1.0:

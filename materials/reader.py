@@ -18,7 +18,7 @@ class Section:
         self._where = where
         self._path = path
         self._values = values
-        self._asked: list[str] = []
+        self._asked: dict[str, None] = {}  # a set that keeps its order
 
     def refuse(self, key: str, problem: str) -> NoReturn:
         """Raise a MaterialError about a key of this table ("" for the table itself)."""
@@ -27,7 +27,7 @@ class Section:
 
     def has(self, key: str) -> bool:
         """Whether the key is present."""
-        self._asked.append(key)
+        self._asked[key] = None
         return key in self._values
 
     def text(self, key: str, default: str | None = None) -> str:

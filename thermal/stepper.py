@@ -10,7 +10,8 @@ import numpy as np
 
 from thermal.conduction.assemble import FaceState
 from thermal.conduction.step import Matrix, Rates, Step, rosenbrock_step
-from thermal.errors import NoConvergence
+from thermal.errors import NoConvergence, OutOfRange
+from thermal.geometry.mesh import Index
 from thermal.interfaces import Array, EddyField, OperatingPoint
 from thermal.schedule import Stage
 from thermal.setup import Setup
@@ -30,7 +31,7 @@ class Moment:
     """The workpiece at one instant, with everything that follows from its enthalpy.
 
     H, T : (n,) ; extended : (n + 2,) [K] core, cells, surface ; memory : of the control [W] ; faces : face -> state ;
-    field, point ; rates ; matrix : where a step may start here.
+    field, point ; rates ; matrix : where a step may start here ; trend : (n,) mean dH/dt of the step that led here.
     """
 
     H: Array
@@ -42,6 +43,7 @@ class Moment:
     point: OperatingPoint
     rates: Rates
     matrix: Matrix | None
+    trend: Array
 
 
 class Stepper:
@@ -51,13 +53,13 @@ class Stepper:
         self.setup = setup
         self.stage = stage
         self.T_peak = T_peak
-        self.losses = setup.losses[stage.place]
         self.accounts = account_names(setup)
-        self._loss_rows = {
-            name: [self.accounts.index(loss_account(face, loss.name)) for loss in losses]
-            for face, losses in self.losses.items()
-            for name in [face]
-        }
+        # A face that loses nothing still has a surface temperature, unless that is the cells' own.
+        self._faces = [
+            (name, losses, [self.accounts.index(loss_account(name, loss.name)) for loss in losses])
+            for name, losses in setup.losses[stage.place].items()
+            if losses or name != "ends"
+        ]
         n = setup.section.mesh.volume.size
         self._idle_field = EddyField(np.zeros(n), 0.0, 0j, 0.0, np.ones(n), 0)
         nothing = 0.0 if setup.has_coil else float("nan")
@@ -72,6 +74,7 @@ class Stepper:
         memory: Array,
         guess: tuple[OperatingPoint, EddyField] | None,
         may_start: bool,
+        trend: Array | None = None,
     ) -> Moment:
         """Everything that follows from H (n,) [J/m3]; with the matrix where a step may start here."""
         setup, section = self.setup, self.setup.section
@@ -85,19 +88,17 @@ class Stepper:
         dT_dH = section.table.slope(H) if may_start else None
         accounts = np.zeros(len(self.accounts))
         faces: dict[str, FaceState] = {}
-        slopes: list[tuple[int, Array, Array]] = []
+        slopes: list[tuple[int, Index, Array]] = []
         lost = 0.0
-        for name, losses in self.losses.items():
-            state = section.face_state(name, losses, T, k, flow, dT_dH, self.T_peak[name])
+        for name, losses, rows in self._faces:
+            state = faces[name] = section.face_state(name, losses, T, k, flow, dT_dH, self.T_peak[name])
             cells = section.mesh.faces[name].cells
-            for row, loss in zip(self._loss_rows[name], state.loss, strict=True):
+            for row, loss in zip(rows, state.loss, strict=True):
                 net[cells] -= loss
                 total = float(loss.sum())
                 accounts[row] += total
                 lost += total
-            if may_start:
-                slopes += [(row, cells, s) for row, s in zip(self._loss_rows[name], state.slope, strict=True)]
-            faces[name] = state
+            slopes += [(row, cells, slope) for row, slope in zip(rows, state.slope, strict=False)]
         bore = faces.get("bore")
         extended = setup.sampler.extended(
             T, float(faces["outer"].T_surface[0]), float(bore.T_surface[0]) if bore else None
@@ -110,8 +111,14 @@ class Stepper:
         else:
             if guess is not None and guess[1].power <= 0.0:
                 guess = None
-            point, field = setup.supply.operate(setup.source.at(T), demand, guess)
-            self.field_solves += field.solves
+            response = setup.source.at(T)
+
+            def field_of(excitation: float, frequency: float, start: EddyField | None) -> EddyField:
+                found = response(excitation, frequency, start)
+                self.field_solves += found.solves
+                return found
+
+            point, field = setup.supply.operate(field_of, demand, guess)
         net += section.mesh.volume * field.heat
         accounts[0] = field.power
         if setup.has_coil:
@@ -122,7 +129,9 @@ class Stepper:
         memory_rate = np.array([control.memory_rate(readings, clipped)])
         matrix = Matrix(conductance, dT_dH, tuple(slopes)) if dT_dH is not None else None
         rates = Rates(net, accounts, memory_rate)
-        return Moment(H, T, extended, memory, faces, field, point, rates, matrix)
+        if trend is None:
+            trend = net / section.mesh.volume
+        return Moment(H, T, extended, memory, faces, field, point, rates, matrix, trend)
 
     def readings(self, extended: Array) -> dict[str, float]:
         """Every reading [K] by name."""
@@ -152,9 +161,23 @@ class Stepper:
             return here.rates
 
         volume = self.setup.section.mesh.volume
-        taken = rosenbrock_step(start.H, start.memory, start.rates, start.matrix, volume, step, rates)
-        end = self.moment(taken.H, taken.extra, recent, may_start=True)
+        matrix = self._ahead(start, step)
+        taken = rosenbrock_step(start.H, start.memory, start.rates, matrix, volume, step, rates)
+        end = self.moment(taken.H, taken.extra, recent, may_start=True, trend=(taken.H - start.H) / step)
         return taken, end
+
+    def _ahead(self, start: Moment, step: float) -> Matrix:
+        """The matrix of a step, its dT/dH the larger of here and where each cell is heading.
+
+        A W-method stays stable with a matrix too stiff, not with one too soft, and dT/dH jumps where a cell leaves
+        a transformation or melting.
+        """
+        assert start.matrix is not None
+        here = start.matrix.dT_dH
+        dT_dH = np.maximum(here, self.setup.section.table.slope(start.H + step * start.trend))
+        ratio = dT_dH / here
+        slopes = tuple((row, cells, slope * ratio[cells]) for row, cells, slope in start.matrix.slopes)
+        return Matrix(start.matrix.conductance, dT_dH, slopes)
 
     def error_of(self, taken: Step, start: Moment, end: Moment) -> float:
         """Largest embedded error of a step [K] over the tolerance."""
@@ -180,7 +203,7 @@ class Stepper:
             try:
                 taken, end = self.try_step(start, length)
                 error = self.error_of(taken, start, end)
-            except NoConvergence as reason:
+            except (NoConvergence, OutOfRange) as reason:
                 error, failure = np.inf, str(reason)
             else:
                 failure = ""

@@ -1,7 +1,7 @@
 """Piecewise-linear laws of temperature, looked up fast for one face or for many.
 
-A loss is asked about eight times in a time step, mostly for one face. Plain floats are then ten times quicker
-than arrays of one element, so every formula of this package is written once and takes either.
+A loss is asked about eight times in a time step, mostly for one face. Plain floats are then several times
+quicker than arrays of one element, so every formula of this package is written once and takes either.
 """
 
 from bisect import bisect_right

@@ -63,7 +63,8 @@ def coil_resistance(coil: Coil, resistivity: float, frequency: float) -> float:
     depth = copper_depth(resistivity, frequency)
     sheet = sheet_resistance(resistivity, depth, coil.turns, coil.bore_perimeter(), coil.length)
     lone = resistivity * coil.turns * coil.turn_length() / (4.0 * coil.tube * depth)
-    return sheet * (1.0 + (1.4 * lone / sheet) ** 3) ** (1.0 / 3.0) * wall_factor(coil.wall, depth)
+    blend: float = (1.0 + (1.4 * lone / sheet) ** 3) ** (1.0 / 3.0)
+    return sheet * blend * wall_factor(coil.wall, depth)
 
 
 @dataclass(frozen=True)

@@ -3,10 +3,9 @@
 V dH/dt = sum of link fluxes + source - losses, T from H by a table. Links between neighbours only (one dimension).
 """
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 import numpy as np
-import numpy.typing as npt
 
 from thermal.geometry.mesh import Mesh
 from thermal.interfaces import Array, BoundaryLoss, PropertyOf
@@ -26,19 +25,20 @@ class EnthalpyTable:
         """T (n,) [K]; beyond the table the end value (runs stop before)."""
         return np.interp(H, self.H, self.T)
 
-    def enthalpy(self, T: npt.ArrayLike) -> Array:
+    def enthalpy(self, T: Array) -> Array:
         """H [J/m3]."""
-        return np.asarray(np.interp(T, self.T, self.H))
+        return np.interp(T, self.T, self.H)
 
     def slope(self, H: Array) -> Array:
         """dT/dH (n,) [K m3/J]."""
-        row = np.clip(np.searchsorted(self.H, H) - 1, 0, self.H.size - 2)
-        return np.asarray(self._slopes[row])
+        return self._slopes[self._inside.searchsorted(H)]
 
     def __post_init__(self) -> None:
         object.__setattr__(self, "_slopes", np.diff(self.T) / np.diff(self.H))
+        object.__setattr__(self, "_inside", self.H[1:-1])
 
-    _slopes: Array = None  # type: ignore[assignment]  # set once in __post_init__
+    _slopes: Array = field(init=False, repr=False)
+    _inside: Array = field(init=False, repr=False)
 
 
 @dataclass(frozen=True, slots=True)
@@ -66,6 +66,10 @@ class Section:
         self.conductivity = conductivity
         self._over_left = mesh.gap_left / mesh.area
         self._over_right = mesh.gap_right / mesh.area
+        # Faces with a half cell in front: the link on the inner side of that cell, and its sign towards the face.
+        self._inner_side = {"outer": (slice(-1, None), 1.0)}
+        if "bore" in mesh.faces:
+            self._inner_side["bore"] = (slice(0, 1), -1.0)
 
     def conductances(self, k: Array) -> Array:
         """Conductance of the links (m,) [W/K]."""
@@ -84,50 +88,36 @@ class Section:
         """Surface temperature and losses of a face.
 
         With q_s the loss and q_in the flux through the inner side of the surface cell, the parabola through that
-        cell gives T_s = T_1 - (gap/k)(3 q_s + q_in)/4; one Newton step from q_s = q_in solves it to
-        well below a millikelvin, as the gap is thin.
+        cell gives T_s = T_1 - (gap/k)(3 q_s + q_in)/4; one Newton step from q_s = q_in solves it to well below a
+        millikelvin, as the gap is thin.
 
         flow : (m,) [W] through the links, towards the outer surface ; dT_dH : (n,) where the slopes are wanted ;
         T_peak : (s,) [K] hottest so far.
         """
         face = self.mesh.faces[name]
-        cells = face.cells
-        T_cell = T[cells]
-        if face.gap[0] == 0.0:
-            surface, stiffness = T_cell, None
-        else:
-            stiffness = 0.75 * face.gap / k[cells]
-            q_in = self._flux_to(name, flow)
-            base = T_cell - stiffness * (q_in / 3.0)
+        surface = T[face.cells]
+        stiffness: Array | None = None
+        if name in self._inner_side:
+            link, sign = self._inner_side[name]
+            stiffness = 0.75 * face.gap / k[face.cells]
+            q_in = sign * flow[link] / self.mesh.area[link]
+            base = surface - stiffness * (q_in / 3.0)
             surface = base - stiffness * q_in
-            q, dq = total_flux(losses, surface, T_peak)
-            surface = surface - (surface - base + stiffness * q) / (1.0 + stiffness * dq)
-        loss, slope = [], []
-        for each in losses:
-            q, dq = each.flux(surface, T_peak)
-            loss.append(q * face.area)
-            if dT_dH is not None:
-                slope.append((dq, face.area * dT_dH[cells]))
+            excess, slope = stiffness * q_in, np.ones(1)
+            for loss in losses:
+                q, dq = loss.flux(surface, T_peak)
+                excess = excess - stiffness * q
+                slope = slope + stiffness * dq
+            surface = surface + excess / slope
+        fluxes = [loss.flux(surface, T_peak) for loss in losses]
+        watts = tuple(q * face.area for q, _ in fluxes)
         if dT_dH is None:
-            return FaceState(surface, tuple(loss), ())
-        # dT_s/dT_1 with all losses of the face acting together.
-        share = 1.0 if stiffness is None else 1.0 / (1.0 + stiffness * sum(dq for dq, _ in slope))
-        return FaceState(surface, tuple(loss), tuple(dq * area * share for dq, area in slope))
-
-    def _flux_to(self, name: str, flow: Array) -> Array:
-        """Flux [W/m2] through the inner side of the surface cell, towards the surface."""
-        if flow.size == 0:
-            return np.zeros(1)
-        if name == "outer":
-            return flow[-1:] / self.mesh.area[-1]
-        return -flow[:1] / self.mesh.area[0]
-
-
-def total_flux(losses: tuple[BoundaryLoss, ...], T_surface: Array, T_peak: Array) -> tuple[Array, Array]:
-    """Sum of the fluxes (s,) [W/m2] out of a face and its slope [W/(m2 K)]."""
-    q, dq = np.zeros_like(T_surface), np.zeros_like(T_surface)
-    for each in losses:
-        part, slope = each.flux(T_surface, T_peak)
-        q = q + part
-        dq = dq + slope
-    return q, dq
+            return FaceState(surface, watts, ())
+        per_enthalpy = face.area * dT_dH[face.cells]
+        if stiffness is not None:
+            # dT_s/dT_1 with all losses of the face acting together.
+            slope = np.ones(1)
+            for _, dq in fluxes:
+                slope = slope + stiffness * dq
+            per_enthalpy = per_enthalpy / slope
+        return FaceState(surface, watts, tuple(dq * per_enthalpy for _, dq in fluxes))

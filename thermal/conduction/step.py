@@ -12,6 +12,7 @@ import numpy as np
 from scipy.linalg.lapack import dgttrf, dgttrs
 
 from thermal.errors import NoConvergence
+from thermal.geometry.mesh import Index
 from thermal.interfaces import Array
 
 GAMMA_DIAGONAL = 0.43586652150845900
@@ -30,6 +31,8 @@ GAMMA = (
 B = (0.24212380706095346, -1.2232505839045147, 1.5452602553351020, GAMMA_DIAGONAL)
 B_EMBEDDED = (0.37810903145819369, -0.096042292212423178, 0.5, 0.5 * GAMMA_DIAGONAL)
 STAGES = 4
+_WEIGHTS = np.array(B)
+_DIFFERENCE = _WEIGHTS - np.array(B_EMBEDDED)
 
 
 @dataclass(frozen=True, slots=True)
@@ -55,7 +58,7 @@ class Matrix:
 
     conductance: Array
     dT_dH: Array
-    slopes: tuple[tuple[int, Array, Array], ...]
+    slopes: tuple[tuple[int, Index, Array], ...]
 
 
 @dataclass(frozen=True, slots=True)
@@ -133,10 +136,9 @@ def rosenbrock_step(
         gained.append(account)
         # The further unknowns are treated explicitly: their row of the matrix is zero.
         memory.append(step * here.extra)
-    H_new, error = H, np.zeros_like(H)
-    for b, b_embedded, k in zip(B, B_EMBEDDED, increments, strict=True):
-        H_new = H_new + b * k
-        error += (b - b_embedded) * k
-    total = sum(b * a for b, a in zip(B, gained, strict=True))
-    extra_new = extra + sum(b * j for b, j in zip(B, memory, strict=True))
-    return Step(H_new, np.asarray(total), np.asarray(extra_new), error)
+    k = np.array(increments)
+    H_new = H + _WEIGHTS @ k
+    error = _DIFFERENCE @ k
+    total = _WEIGHTS @ np.array(gained)
+    extra_new = extra + _WEIGHTS @ np.array(memory)
+    return Step(H_new, total, extra_new, error)

@@ -13,10 +13,31 @@ PRESSURE = 101325.0
 T_MIN, T_MAX, STEP = 250, 1900, 25
 # Relative uncertainties of a dilute gas as the two papers state them (from memory), rounded up.
 TABLES = (
-    ("density", "kg/m3", "rhomass", "lemmon-2000", "equation of state", "0.1 %"),
-    ("viscosity", "Pa s", "viscosity", "lemmon-jacobsen-2004", "viscosity equation", "2 %"),
-    ("conductivity", "W/(m K)", "conductivity", "lemmon-jacobsen-2004", "conductivity equation", "3 %"),
-    ("heat_capacity", "J/(kg K)", "cpmass", "lemmon-2000", "equation of state", "1 %"),
+    ("density", "kg/m3", "rhomass", "lemmon-2000", "equation of state, evaluated with CoolProp (bell-2014)", "0.1 %"),
+    (
+        "viscosity",
+        "Pa s",
+        "viscosity",
+        "lemmon-jacobsen-2004",
+        "viscosity equation, evaluated with CoolProp (bell-2014)",
+        "2 %",
+    ),
+    (
+        "conductivity",
+        "W/(m K)",
+        "conductivity",
+        "lemmon-jacobsen-2004",
+        "conductivity equation, evaluated with CoolProp (bell-2014)",
+        "3 %",
+    ),
+    (
+        "heat_capacity",
+        "J/(kg K)",
+        "cpmass",
+        "lemmon-2000",
+        "equation of state, evaluated with CoolProp (bell-2014)",
+        "1 %",
+    ),
 )
 
 

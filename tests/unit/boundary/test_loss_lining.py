@@ -1,3 +1,4 @@
+from itertools import pairwise
 from math import log, pi
 
 import numpy as np
@@ -64,7 +65,13 @@ def test_a_thin_lining_tends_to_none(air):
 
 @pytest.mark.parametrize("T", [280.0, TC, 400.0, 900.0, 1473.15, 1850.0])
 @pytest.mark.parametrize(
-    "k_lining", [([300.0, 1700.0], [1.2, 1.9]), ([300.0, 800.0], [6.0, 0.4])], ids=["rising", "falling"]
+    "k_lining",
+    [
+        ([300.0, 1700.0], [1.2, 1.9]),
+        ([300.0, 800.0], [6.0, 0.4]),
+        ([300.0, 630.0, 804.0], [50.0, 50.0, 0.04]),
+    ],
+    ids=["rising", "falling", "plunging: plain Newton runs away"],
 )
 def test_hot_face_agrees_with_an_independent_root_and_quadrature(air, curve, T, k_lining):
     R1, R2, R3 = RADII
@@ -78,8 +85,9 @@ def test_hot_face_agrees_with_an_independent_root_and_quadrature(air, curve, T, 
         return e * STEFAN_BOLTZMANN * (T**4 - T2**4) + gas / (R1 * log(R2 / R1))
 
     def through_lining(T2):
-        knee = [800.0] if T2 > 800.0 else None
-        return quad(k, TC, T2, epsabs=1e-9, epsrel=1e-12, points=knee)[0] / (R1 * log(R3 / R2))
+        knees = sorted({TC, T2, *[knee for knee in k_lining[0] if TC < knee < T2]})
+        pieces = [quad(k, *ends, epsabs=1e-9, epsrel=1e-12)[0] for ends in pairwise(knees)]
+        return np.copysign(sum(pieces), T2 - TC) / (R1 * log(R3 / R2))
 
     if T == TC:
         assert one(loss, T)[0] == 0.0

@@ -54,7 +54,7 @@ def check_table(table: Caloric, cp: Property) -> None:
 
     h_nodes = np.concatenate(([0.0], np.cumsum(from_left(1.0))))
     h_nodes -= h_nodes[table.T_nodes == T_REFERENCE]
-    for share in np.linspace(0.0, 1.0, 21):
+    for share in np.linspace(0.0, 1.0, 20, endpoint=False):
         T = left[:, 0] + width[:, 0] * share
         assert np.abs(table.temperature(h_nodes[:-1] + from_left(float(share))) - T).max() < 0.01
 

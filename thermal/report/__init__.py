@@ -1,0 +1,1 @@
+"""What a reader gets: tables, files and figures."""

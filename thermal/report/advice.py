@@ -1,0 +1,144 @@
+"""What to expect of a result, what limits it, and what to be careful with."""
+
+import numpy as np
+
+from thermal.case import Case
+from thermal.constants import ZERO_CELSIUS
+from thermal.control import HoldTemperature
+from thermal.results.history import History
+from thermal.results.stages import stage_ends, time_above
+from thermal.results.verdict import celsius, seconds
+from thermal.setup import Setup
+
+HELD_WITHIN = 5.0
+"""A hold that ends farther than this [K] from its set point is worth a note."""
+
+WARM, FUMES, NEAR_MELTING = 60.0 + ZERO_CELSIUS, 200.0 + ZERO_CELSIUS, 100.0
+"""Warm enough to burn skin, hot enough for oil and coatings to smoke [K]; margin to the solidus that is close [K]."""
+
+
+def expectation(case: Case) -> tuple[str, ...]:
+    """How far the answer can be trusted without a measurement to adjust it."""
+    told = [
+        "Not calibrated: power within about ±10 %, temperature within about ±30 to 50 K (common practice); "
+        "a measured heating and cooling curve of your own piece narrows this."
+    ]
+    if case.workpiece.neighbours == "none":
+        told.append("Heat flows through the section only: the answer is an average over the length of the piece.")
+        if case.coil is not None:
+            told.append(
+                "Estimate: where piece and coil are equally long, the middle of a single piece takes about 11 to "
+                "16 % more power than the average, and the ends less; an overhanging coil changes that."
+            )
+    return tuple(told)
+
+
+def remarks(setup: Setup, case: Case, history: History) -> tuple[str, ...]:
+    """Notes of the setup, data held beyond their range, holds that were not kept and moments not covered."""
+    return (
+        *history.notes,
+        *_beyond_data(setup, case, history),
+        *_not_held(setup, history),
+        *(
+            f"No profile at {seconds(time)}: the run ends at {seconds(float(history.time[-1]))}."
+            for time in case.output.profiles_at
+            if time > history.time[-1]
+        ),
+    )
+
+
+def _beyond_data(setup: Setup, case: Case, history: History) -> list[str]:
+    """One note for every group of properties whose data end at the same temperature and were exceeded."""
+    groups: dict[tuple[float, str], list[str]] = {}
+    for name, T_max in setup.material.data_limit().items():
+        emissivity = name.startswith("emissivity")
+        if emissivity and name != f"emissivity ({case.workpiece.surface})":
+            continue
+        groups.setdefault((T_max, "surface" if emissivity else "maximum"), []).append(name.replace("_", " "))
+    told = []
+    for (T_max, reading), names in groups.items():
+        series = history.readings[reading]
+        held = time_above(history.time, series, T_max)
+        if held > 0.0:
+            listed = names[0] if len(names) == 1 else f"{', '.join(names[:-1])} and {names[-1]}"
+            told.append(
+                f"Data of {setup.material.key} for {listed} end at {celsius(T_max)}: the last value was used for "
+                f"{seconds(held)}, up to {celsius(float(series.max()))}."
+            )
+    return told
+
+
+def _not_held(setup: Setup, history: History) -> list[str]:
+    told = []
+    for end in stage_ends(setup, history):
+        control = setup.stages[end.number].control
+        if not isinstance(control, HoldTemperature) or end.record.reason != "time":
+            continue
+        off = float(history.readings[control.reading][end.last]) - control.set_point
+        if abs(off) > HELD_WITHIN:
+            told.append(
+                f"The {end.name} stage ends with {control.reading} {abs(off):.0f} K "
+                f"{'above' if off > 0.0 else 'below'} its set point of {celsius(control.set_point)}."
+            )
+    return told
+
+
+def cautions(setup: Setup, history: History) -> tuple[str, ...]:
+    """What can hurt people in what the case describes; no compliance assessment."""
+    hottest = float(np.max(history.readings["maximum"]))
+    material = setup.material
+    powered = any(stage.place == "coil" for stage in setup.stages)
+    told = [
+        "This is a calculation, not an assessment of safety or compliance; local codes and the people licensed "
+        "for the work decide."
+    ]
+    if hottest > WARM:
+        told.append(
+            "Hot metal: it burns long after it stops glowing, and below about 500 °C it looks cold. Glowing metal "
+            "gives off infrared light that harms the eyes: shields, clothing and filter glasses as local rules ask."
+        )
+    if powered:
+        told.append(
+            "Coil field: keep pacemakers, insulin pumps and other implants, rings and watches out of reach of the "
+            "field. Exposure is for a competent person to assess (guidelines of ICNIRP; in the European Union "
+            "Directive 2013/35/EU)."
+        )
+        told.append(
+            "Voltage: supply, coil, leads and capacitors can kill, and capacitors keep their charge after "
+            "switching off: isolate, discharge, prove dead. Work for licensed electricians under local codes "
+            "(IEC 60519-1 covers the safety of electroheating installations)."
+        )
+        told.append(
+            "Cooling water: a leak onto hot metal flashes to steam, and water under a melt explodes. Interlock flow "
+            "and temperature as the maker of the equipment and local codes ask."
+        )
+    if hottest > FUMES:
+        told.append(
+            "Fumes: oil, paint, scale and coatings smoke; zinc, cadmium and lead are poisonous. Clean the piece, "
+            "extract the fumes, keep to local workplace limits."
+        )
+    if powered and material.curie_temperature is None:
+        told.append(
+            "Force: the field pushes light non-magnetic pieces out of the coil; hold them as the maker of the "
+            "equipment prescribes."
+        )
+    told.extend(_near_melting(setup, hottest))
+    if any(isinstance(stage.control, HoldTemperature) for stage in setup.stages):
+        told.append(
+            "Holding: a control that reads the wrong temperature heats on without end; have an independent "
+            "over-temperature cut-out as local codes ask."
+        )
+    return tuple(told)
+
+
+def _near_melting(setup: Setup, hottest: float) -> list[str]:
+    solidus = setup.material.solidus
+    if solidus is None or hottest < solidus - NEAR_MELTING:
+        return []
+    melt = (
+        "Molten metal explodes with water and damp: keep everything under and around the coil dry, and leave melting "
+        "to a plant and people licensed for it."
+    )
+    if setup.material.group == "aluminium":
+        return [f"Near melting: aluminium softens and runs without changing colour. {melt}"]
+    return [f"Near melting: the piece loses its strength and can drop. {melt}"]

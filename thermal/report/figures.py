@@ -1,0 +1,310 @@
+"""The curves of a run as one picture: temperatures above, limits and power below."""
+
+import warnings
+from dataclasses import dataclass
+from itertools import cycle
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from thermal.case import Case
+from thermal.constants import ZERO_CELSIUS
+from thermal.control import HoldTemperature
+from thermal.report.labels import fit_text, overlap, spread_out
+from thermal.report.versions import own_version
+from thermal.report.words import piece_in_words
+from thermal.results.dense import Sampled, sample
+from thermal.results.history import History
+from thermal.results.stages import limit_spans, off_spans, stage_ends
+from thermal.results.verdict import sentence
+from thermal.setup import Setup
+
+if TYPE_CHECKING:
+    from matplotlib.axes import Axes
+    from matplotlib.figure import Figure
+    from matplotlib.text import Text
+
+SIZE = (11.69, 8.27)
+LEFT, RIGHT = 0.075, 0.855
+RC = {
+    "font.family": "DejaVu Sans",
+    "font.size": 10.0,
+    "axes.titlesize": 10.0,
+    "axes.spines.top": False,
+    "axes.spines.right": False,
+    "axes.edgecolor": "#404040",
+    "axes.linewidth": 0.8,
+    "axes.grid": True,
+    "grid.color": "#DDDDDD",
+    "grid.linewidth": 0.6,
+    "lines.linewidth": 1.8,
+    "text.parse_math": False,
+    "svg.hashsalt": "thermal",
+}
+STYLES = {
+    "surface": ("#B5401D", "-", 2.2),
+    "core": ("#1B5AA6", (0, (6, 2)), 2.2),
+    "mean": ("#4F4F4F", "-", 1.0),
+    "maximum": ("#111111", (0, (1, 1.6)), 1.8),
+}
+"""Reading -> colour, dashes and width; told apart in grey by dashes and width alone."""
+OWN_COLOURS = ("#00776B", "#8C4A94", "#A67800", "#5E7F13")
+OWN_DASHES = ((0, (5, 1.5, 1, 1.5)), (0, (3, 1.5)), (0, (8, 2, 1, 2, 1, 2)), (0, (2, 1)))
+LEVEL_COLOUR = "#6A6A6A"
+OFF_COLOUR = "#ECECEC"
+LIMIT_COLOUR = "#A67800"
+LEVEL_ROOM = 13.0
+"""Height of a level's label [points]."""
+NAME_AT_MOST = 11
+"""Longest name of a reading beside its curve, in letters."""
+LONG_RUN = 600.0
+"""Above this many seconds the time axis is in minutes."""
+SVG_METADATA = {"Date": None}
+"""Leaves the date out: the same run gives the same file."""
+
+
+@dataclass(frozen=True)
+class Clock:
+    """Unit of the time axis."""
+
+    unit: str
+    seconds: float
+
+
+def save_curves(setup: Setup, case: Case, history: History, folder: Path) -> None:
+    """Write curves.png and curves.svg into an existing folder."""
+    import matplotlib
+
+    with matplotlib.rc_context(RC), warnings.catch_warnings():
+        # A title may hold characters the font lacks; a box in their place is no reason to fail or to talk.
+        warnings.filterwarnings("ignore", message="Glyph .* missing from", category=UserWarning)
+        figure = curves_figure(setup, case, history)
+        figure.savefig(folder / "curves.png", dpi=150)
+        figure.savefig(folder / "curves.svg", metadata=SVG_METADATA)
+
+
+def curves_figure(setup: Setup, case: Case, history: History) -> "Figure":
+    """The picture; drawn with the settings RC in force."""
+    from matplotlib.backends.backend_agg import FigureCanvasAgg
+    from matplotlib.figure import Figure
+
+    figure = Figure(figsize=SIZE)
+    FigureCanvasAgg(figure)
+    end = float(history.time[-1])
+    clock = Clock("min", 60.0) if end > LONG_RUN else Clock("s", 1.0)
+    spans = limit_spans(history)
+    strip = 0.030 * len(spans)
+    upper = figure.add_axes((LEFT, 0.36 + strip, RIGHT - LEFT, 0.485 - strip))
+    lower = figure.add_axes((LEFT, 0.115, RIGHT - LEFT, 0.20), sharex=upper)
+    upper.set_xlim(0.0, max(end, 1e-9) / clock.seconds)
+    upper.tick_params(labelbottom=False)
+    for axes in (upper, lower):
+        for start, stop in off_spans(history):
+            axes.axvspan(start / clock.seconds, stop / clock.seconds, color=OFF_COLOUR, linewidth=0)
+    fine = _fine(setup, history)
+    _temperatures(upper, setup, history, fine, clock)
+    _powers(lower, setup, fine, clock)
+    if spans:
+        limits = figure.add_axes((LEFT, 0.335, RIGHT - LEFT, strip), sharex=upper)
+        _limits(limits, spans, clock)
+    _stages(figure, upper, setup, history, clock)
+    _frame(figure, setup, case, history)
+    return figure
+
+
+def _fine(setup: Setup, history: History) -> Sampled:
+    """The run at its steps and evenly in between, stage by stage; boundaries stand twice."""
+    stages, times = [], []
+    even = np.linspace(0.0, history.time[-1], 401)
+    for end in stage_ends(setup, history):
+        inside = even[(even > end.record.start) & (even < end.record.end)]
+        moments = np.unique(np.concatenate([history.time[history.stage == end.number], inside]))
+        times.append(moments)
+        stages.append(np.full(moments.size, end.number))
+    return sample(setup, history, np.concatenate(stages), np.concatenate(times))
+
+
+def _temperatures(axes: "Axes", setup: Setup, history: History, fine: Sampled, clock: Clock) -> None:
+    time = fine.time / clock.seconds
+    names = [name for name in fine.readings if name != "spread"]
+    own = zip(cycle(OWN_COLOURS), cycle(OWN_DASHES), strict=False)
+    lines = []
+    top = max(float(fine.readings["maximum"].max()), max(T for _, T in _targets(setup)) if _targets(setup) else 0.0)
+    for name in names:
+        colour, dashes, width = STYLES[name] if name in STYLES else (*next(own), 1.3)
+        values = fine.readings[name] - ZERO_CELSIUS
+        axes.plot(time, values, color=colour, linestyle=dashes, linewidth=width, zorder=3)
+        lines.append((name, colour, float(values[-1])))
+    low = min(float(fine.extended.min()) - ZERO_CELSIUS, 0.0)
+    axes.set_ylim(low, top - ZERO_CELSIUS + 0.09 * (top - ZERO_CELSIUS - low))
+    axes.set_ylabel("temperature, °C")
+    _levels(axes, setup)
+    _end_labels(axes, lines)
+
+
+def _targets(setup: Setup) -> list[tuple[str, float]]:
+    """Name and temperature [K] of everything the schedule asks for, each once."""
+    found: dict[tuple[str, float], None] = {}
+    for stage in setup.stages:
+        if stage.stop is not None:
+            for name, T in stage.stop.temperatures.items():
+                found[(f"target {name}", T)] = None
+        if isinstance(stage.control, HoldTemperature):
+            found[(f"hold {stage.control.reading}", stage.control.set_point)] = None
+    return list(found)
+
+
+def _levels(axes: "Axes", setup: Setup) -> None:
+    """Targets, and the Curie point and the solidus where the picture reaches them, as labelled lines."""
+    low, high = axes.get_ylim()
+    material = setup.material
+    levels = _targets(setup)
+    for name, T in (("Curie point", material.curie_temperature), ("solidus", material.solidus)):
+        if T is not None and low < T - ZERO_CELSIUS < high + 0.15 * (high - low):
+            levels.append((name, T))
+            high = max(high, T - ZERO_CELSIUS + 0.06 * (high - low))
+    axes.set_ylim(low, high)
+    heights = sorted({T - ZERO_CELSIUS for _, T in levels})
+    placed: list[Text] = []
+    for name, T in sorted(levels, key=lambda level: level[1]):
+        height = T - ZERO_CELSIUS
+        axes.axhline(height, color=LEVEL_COLOUR, linewidth=0.9, linestyle=(0, (10, 4)), zorder=2)
+        placed.append(_level_label(axes, f"{name} {height:.0f} °C", height, heights, placed))
+
+
+def _level_label(
+    axes: "Axes", words: str, height: float, heights: list[float], placed: "list[Text]"
+) -> "Text":
+    """A label above its line, below it where another line is close above; moved right clear of earlier labels."""
+    from matplotlib.patheffects import withStroke
+
+    points = 72.0 / axes.figure.dpi
+    rows = [float(axes.transData.transform((0.0, each))[1]) * points for each in heights]
+    own = rows[heights.index(height)]
+    room_above = min((row - own for row in rows if row > own), default=LEVEL_ROOM)
+    room_below = min((own - row for row in rows if row < own), default=LEVEL_ROOM)
+    below = room_above < LEVEL_ROOM <= room_below
+    label = axes.annotate(
+        words,
+        xy=(0.0, height),
+        xycoords=("axes fraction", "data"),
+        xytext=(6, -2.5 if below else 2),
+        textcoords="offset points",
+        verticalalignment="top" if below else "bottom",
+        fontsize=8.5,
+        color="#333333",
+        zorder=4,
+        path_effects=[withStroke(linewidth=2.5, foreground="white")],
+    )
+    shift = 6.0
+    while (hit := next((p for p in placed if _collide(p, label)), None)) is not None:
+        shift += (hit.get_window_extent().x1 - label.get_window_extent().x0) * points + 8.0
+        label.set_position((shift, label.get_position()[1]))
+    return label
+
+
+def _collide(a: "Text", b: "Text") -> bool:
+    return overlap(a.get_window_extent(), b.get_window_extent())
+
+
+def _end_labels(axes: "Axes", lines: list[tuple[str, str, float]]) -> None:
+    """Names and last values right of the curves, moved apart, with a thin line to the end of each curve."""
+    figure, box = axes.figure, axes.get_window_extent()
+    ends = [float(axes.transData.transform((0.0, value))[1]) for _, _, value in lines]
+    for size in (9.5, 8.0, 6.5, 5.0):
+        line_height = size * figure.dpi / 72.0 * 1.3
+        centres = spread_out(ends, [line_height] * len(lines), box.y0 - 2.0 * line_height, box.y1)
+        if centres is not None:
+            break
+    else:
+        axes.legend([name for name, _, _ in lines], loc="upper left", ncols=4, fontsize=6)
+        return
+    for (name, colour, value), centre in zip(lines, centres, strict=True):
+        at = float(axes.transData.inverted().transform((0.0, centre))[1])
+        right = axes.get_yaxis_transform()
+        axes.plot([1.0, 1.02], [value, at], transform=right, color=colour, linewidth=0.7, clip_on=False)
+        words = f"{_short(name)} {value:.0f} °C"
+        axes.text(
+            1.024, at, words, transform=right, fontsize=size, color=colour, verticalalignment="center_baseline"
+        )
+
+
+def _short(name: str) -> str:
+    return name if len(name) <= NAME_AT_MOST else name[: NAME_AT_MOST - 1] + "…"
+
+
+def _powers(axes: "Axes", setup: Setup, fine: Sampled, clock: Clock) -> None:
+    time = fine.time / clock.seconds
+    axes.plot(
+        time, fine.series["absorbed_power"] / 1e3, color="#00776B", linestyle="-", label="absorbed\nby the workpiece"
+    )
+    if setup.has_coil:
+        supply = fine.series["supply_power"] / 1e3
+        axes.plot(time, supply, color="#8C4A94", linestyle=(0, (6, 2)), label="from the supply\n(whole coil)")
+    axes.set_ylim(bottom=0.0)
+    axes.set_ylabel("power, kW")
+    axes.set_xlabel(f"time, {clock.unit}")
+    axes.legend(loc="upper left", bbox_to_anchor=(1.0, 1.08), frameon=False, fontsize=8.5, labelspacing=0.8)
+
+
+def _limits(axes: "Axes", spans: dict[str, list[tuple[float, float]]], clock: Clock) -> None:
+    """One row per limit that bound, marked where it did."""
+    for row, (name, found) in enumerate(spans.items()):
+        bars = [(start / clock.seconds, (stop - start) / clock.seconds) for start, stop in found]
+        axes.broken_barh(bars, (row - 0.32, 0.64), facecolor=LIMIT_COLOUR, edgecolor="#404040", hatch="////")
+        axes.text(
+            1.012,
+            row,
+            f"{name} limit bound",
+            transform=axes.get_yaxis_transform(),
+            verticalalignment="center",
+            fontsize=8.5,
+        )
+    axes.set_ylim(len(spans) - 0.5, -0.5)
+    axes.set_yticks([])
+    axes.grid(visible=False)
+    axes.tick_params(bottom=False, labelbottom=False)
+    for side in ("left", "bottom"):
+        axes.spines[side].set_visible(False)
+
+
+def _stages(figure: "Figure", axes: "Axes", setup: Setup, history: History, clock: Clock) -> None:
+    """Stage boundaries, and the names of the stages above the picture."""
+    ends = [end for end in stage_ends(setup, history) if end.record.end > end.record.start]
+    for end in ends[1:]:
+        for each in figure.axes:
+            each.axvline(end.record.start / clock.seconds, color="#9A9A9A", linewidth=0.8, zorder=1)
+    wanted = [0.5 * (end.record.start + end.record.end) / float(history.time[-1]) for end in ends]
+    labels = [
+        axes.text(0.0, 1.052, end.name, transform=axes.transAxes, ha="center", va="center", fontsize=9.5)
+        for end in ends
+    ]
+    width = axes.get_window_extent().width
+    sizes = [label.get_window_extent().width / width + 0.015 for label in labels]
+    centres = spread_out(wanted, sizes, -0.05, 1.15)
+    if centres is None:
+        for label, end in zip(labels, ends, strict=True):
+            label.set_text(str(end.number + 1))
+        sizes = [label.get_window_extent().width / width + 0.004 for label in labels]
+        centres = spread_out(wanted, sizes, -0.05, 1.15)
+    for label, position, tip in zip(labels, centres or wanted, wanted, strict=True):
+        label.set_x(position)
+        axes.plot(
+            [position, tip], [1.033, 1.0], transform=axes.transAxes, color="#9A9A9A", linewidth=0.8, clip_on=False
+        )
+
+
+def _frame(figure: "Figure", setup: Setup, case: Case, history: History) -> None:
+    """Title, verdict, and the footer with the piece and the version."""
+    width = (0.985 - LEFT) * SIZE[0] * figure.dpi
+    title = figure.text(LEFT, 0.978, "", fontweight="bold", va="top")
+    fit_text(title, setup.title, width, (14.0, 12.0, 10.0))
+    under = title.get_window_extent().y0 / (SIZE[1] * figure.dpi) - 0.008
+    fit_text(figure.text(LEFT, under, "", va="top"), sentence(setup, history), width, (9.5, 8.5, 7.5))
+    figure.text(LEFT, 0.022, piece_in_words(setup, case), fontsize=8.5, color="#333333", va="bottom")
+    figure.text(
+        0.985, 0.022, f"thermal {own_version()}", fontsize=8.5, color="#333333", va="bottom", ha="right"
+    )
+    if off_spans(history):
+        figure.text(LEFT, 0.045, "grey: power off", fontsize=8.5, color="#333333", va="bottom")
