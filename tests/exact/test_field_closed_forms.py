@@ -16,8 +16,8 @@ from scipy.special import bei, beip, ber, berp, iv, kv
 from thermal.constants import MU_0
 from thermal.eddy import exact
 
-PRINTED = 1e-9
-"""Relative; the printed figures have ten digits and an older mu_0."""
+PRINTED = 2e-9
+"""Relative; the printed figures have an older mu_0, and weak skins follow its square."""
 
 
 def by_kelvin_functions(xi):
@@ -173,7 +173,7 @@ def test_bar_profile(xi):
     assert_allclose(np.abs(exact.cylinder_field(PLACES, xi)), H, rtol=1e-10)
     x = math.sqrt(2.0) * xi
     ratio = np.abs((berp(x * PLACES) + 1j * beip(x * PLACES)) / (berp(x) + 1j * beip(x)))
-    assert_allclose(ratio, J, rtol=1e-10)
+    assert_allclose(ratio, J, rtol=1e-9)
 
 
 def test_best_bar():
@@ -289,9 +289,13 @@ def test_surface_core_factor(xi):
 
 
 def test_surface_core_factor_limits():
-    # CP-01: 1/2 for a << delta, (1 - K) xi = 1.0050314381 at xi = 100 and 1 far beyond.
+    # CP-01: 1/2 for a << delta, (1 - K) xi = 1.0050314381 at xi = 100.
     assert_allclose(exact.surface_core_factor(0.02), 0.5, rtol=1e-6)
     assert_allclose((1.0 - exact.surface_core_factor(100.0)) * 100.0, 1.0050314381360947, rtol=1e-9)
+
+
+def test_surface_core_factor_of_a_very_thin_skin():
+    # CP-01: 1 - K tends to delta/a.
     assert_allclose((1.0 - exact.surface_core_factor(2000.0)) * 2000.0, 1.0, rtol=1e-3)
 
 
