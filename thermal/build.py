@@ -66,7 +66,7 @@ def build(case: Case) -> Setup:
     table = EnthalpyTable(material.density * material.caloric.h_nodes, material.caloric.T_nodes)
     section = Section(mesh, table, interpolated(material.conductivity))
     mass = material.density * float(mesh.volume.sum())
-    T_end = material.liquidus if material.liquidus is not None else float(material.caloric.T_nodes[-1])
+    T_end = next(T for T in (material.liquidus, material.solidus, material.caloric.T_max) if T is not None)
     return Setup(
         title=case.title or case.name,
         material=material,

@@ -14,6 +14,11 @@ class Control(Protocol):
         """Whether readings must be passed (they cost time at every stage of a step)."""
         ...
 
+    @property
+    def gain(self) -> tuple[str, float]:
+        """Reading (surface or mean) the demand answers at once, and fall of the power with it [W/K]; 0 for none."""
+        ...
+
     def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
         """Demand at readings [K], present loss [W] and memory [W]."""
         ...
@@ -29,6 +34,7 @@ class FixedDrive:
 
     fixed: Demand
     needs_readings: bool = False
+    gain: tuple[str, float] = ("surface", 0.0)
 
     def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
         """The demand."""
@@ -59,6 +65,11 @@ class HoldTemperature:
     reset: float
     ceiling: float
     needs_readings: bool = True
+
+    @property
+    def gain(self) -> tuple[str, float]:
+        """The surface or the mean, and C/response [W/K]."""
+        return ("mean" if self.reading == "mean" else "surface"), self.capacity / self.response
 
     def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
         """Absorbed power [W], never negative."""

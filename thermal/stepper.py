@@ -4,12 +4,12 @@ Knows the parts of a Setup only through their roles.
 """
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from thermal.conduction.assemble import FaceState
-from thermal.conduction.step import Matrix, Rates, Step, rosenbrock_step
+from thermal.conduction.step import Feedback, Matrix, Rates, Step, rosenbrock_step
 from thermal.errors import NoConvergence, OutOfRange
 from thermal.geometry.mesh import Index
 from thermal.interfaces import Array, EddyField, OperatingPoint
@@ -127,11 +127,29 @@ class Stepper:
             accounts[3] = point.tank_loss * setup.share
         clipped = demand.kind == "off" or point.limit is not None
         memory_rate = np.array([control.memory_rate(readings, clipped)])
-        matrix = Matrix(conductance, dT_dH, tuple(slopes)) if dT_dH is not None else None
+        matrix = None
+        if dT_dH is not None:
+            feedback = None if clipped else self._feedback(dT_dH, field, accounts)
+            matrix = Matrix(conductance, dT_dH, tuple(slopes), feedback)
         rates = Rates(net, accounts, memory_rate)
         if trend is None:
             trend = net / section.mesh.volume
         return Moment(H, T, extended, memory, faces, field, point, rates, matrix, trend)
+
+    def _feedback(self, dT_dH: Array, field: EddyField, accounts: Array) -> Feedback | None:
+        """What the controller adds to the matrix: without it, it would hold the steps to its response time."""
+        reading, gain = self.stage.control.gain
+        if gain == 0.0 or field.power <= 0.0:
+            return None
+        if reading == "mean":
+            pull = gain * self.setup.sampler.volume_share * dT_dH
+        else:
+            pull = np.zeros_like(dT_dH)
+            pull[-1] = gain * dT_dH[-1]
+        per_watt = np.zeros_like(accounts)
+        electrical = 1 + len(ELECTRICAL) if self.setup.has_coil else 1
+        per_watt[:electrical] = accounts[:electrical] / field.power
+        return Feedback(self.setup.section.mesh.volume * field.heat / field.power, pull, per_watt)
 
     def readings(self, extended: Array) -> dict[str, float]:
         """Every reading [K] by name."""
@@ -177,7 +195,7 @@ class Stepper:
         dT_dH = np.maximum(here, self.setup.section.table.slope(start.H + step * start.trend))
         ratio = dT_dH / here
         slopes = tuple((row, cells, slope * ratio[cells]) for row, cells, slope in start.matrix.slopes)
-        return Matrix(start.matrix.conductance, dT_dH, slopes)
+        return replace(start.matrix, dT_dH=dT_dH, slopes=slopes)
 
     def error_of(self, taken: Step, start: Moment, end: Moment) -> float:
         """Largest embedded error of a step [K] over the tolerance."""

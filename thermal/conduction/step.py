@@ -49,16 +49,30 @@ class Rates:
 
 
 @dataclass(frozen=True, slots=True)
+class Feedback:
+    """A controller that answers the state with power: d(heat_flow)/dH = -share x pull.
+
+    share : (n,) of the power each cell gets, adding up to 1 ; pull : (n,) [W m3/J] fall of the power with H ;
+    accounts : (p,) what every account gains per watt of it.
+    """
+
+    share: Array
+    pull: Array
+    accounts: Array
+
+
+@dataclass(frozen=True, slots=True)
 class Matrix:
     """The approximate Jacobian of heat_flow: V d/dt -> -(K dT/dH + loss slopes), frozen at the start of the step.
 
     conductance : (m,) [W/K] ; dT_dH : (n,) ; slopes : per account that depends on the state, its index, the cells
-    and d(account)/dH (s,) [W m3/J] there.
+    and d(account)/dH (s,) [W m3/J] there ; feedback : of a controller, or None.
     """
 
     conductance: Array
     dT_dH: Array
     slopes: tuple[tuple[int, Index, Array], ...]
+    feedback: Feedback | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -105,6 +119,11 @@ def rosenbrock_step(
     if factors[-1] != 0:
         raise NoConvergence("the heat equations of the section could not be solved (singular matrix)")
     *lu, _ = factors
+    feedback = matrix.feedback
+    if feedback is not None:
+        # Sherman-Morrison: the controller adds a matrix of rank one.
+        answer, _ = dgttrs(*lu, feedback.share)
+        reply = shift / (1.0 + shift * float(feedback.pull @ answer))
 
     increments: list[Array] = []
     gained: list[Array] = []
@@ -130,6 +149,10 @@ def rosenbrock_step(
         if info != 0:
             raise NoConvergence("the heat equations of the section could not be solved")
         account = step * here.accounts
+        if feedback is not None:
+            fall = reply * float(feedback.pull @ solved)
+            solved = solved - fall * answer
+            account -= fall * feedback.accounts
         for index, cells, slope in matrix.slopes:
             account[index] += shift * float(slope @ solved[cells])
         increments.append(solved if carried is None else solved - carried)

@@ -26,7 +26,9 @@ if TYPE_CHECKING:
     from matplotlib.text import Text
 
 SIZE = (11.69, 8.27)
-LEFT, RIGHT = 0.075, 0.855
+DPI = 150
+LEFT, RIGHT, MARGIN = 0.075, 0.855, 0.985
+"""Bounds of the panels, and of everything that is written, as shares of the width."""
 RC = {
     "font.family": "DejaVu Sans",
     "font.size": 10.0,
@@ -40,6 +42,7 @@ RC = {
     "grid.linewidth": 0.6,
     "lines.linewidth": 1.8,
     "text.parse_math": False,
+    "text.hinting": "none",
     "svg.hashsalt": "thermal",
 }
 STYLES = {
@@ -56,7 +59,7 @@ OFF_COLOUR = "#ECECEC"
 LIMIT_COLOUR = "#A67800"
 LEVEL_ROOM = 13.0
 """Height of a level's label [points]."""
-NAME_AT_MOST = 11
+NAME_AT_MOST = 18
 """Longest name of a reading beside its curve, in letters."""
 LONG_RUN = 600.0
 """Above this many seconds the time axis is in minutes."""
@@ -80,7 +83,7 @@ def save_curves(setup: Setup, case: Case, history: History, folder: Path) -> Non
         # A title may hold characters the font lacks; a box in their place is no reason to fail or to talk.
         warnings.filterwarnings("ignore", message="Glyph .* missing from", category=UserWarning)
         figure = curves_figure(setup, case, history)
-        figure.savefig(folder / "curves.png", dpi=150)
+        figure.savefig(folder / "curves.png")
         figure.savefig(folder / "curves.svg", metadata=SVG_METADATA)
 
 
@@ -89,7 +92,7 @@ def curves_figure(setup: Setup, case: Case, history: History) -> "Figure":
     from matplotlib.backends.backend_agg import FigureCanvasAgg
     from matplotlib.figure import Figure
 
-    figure = Figure(figsize=SIZE)
+    figure = Figure(figsize=SIZE, dpi=DPI)
     FigureCanvasAgg(figure)
     end = float(history.time[-1])
     clock = Clock("min", 60.0) if end > LONG_RUN else Clock("s", 1.0)
@@ -211,27 +214,36 @@ def _collide(a: "Text", b: "Text") -> bool:
 def _end_labels(axes: "Axes", lines: list[tuple[str, str, float]]) -> None:
     """Names and last values right of the curves, moved apart, with a thin line to the end of each curve."""
     figure, box = axes.figure, axes.get_window_extent()
+    right = axes.get_yaxis_transform()
     ends = [float(axes.transData.transform((0.0, value))[1]) for _, _, value in lines]
-    for size in (9.5, 8.0, 6.5, 5.0):
-        line_height = size * figure.dpi / 72.0 * 1.3
-        centres = spread_out(ends, [line_height] * len(lines), box.y0 - 2.0 * line_height, box.y1)
-        if centres is not None:
+    labels = [
+        axes.text(
+            1.024, 0.0, f"{_short(name)} {value:.0f} °C", transform=right, color=colour, va="center_baseline"
+        )
+        for name, colour, value in lines
+    ]
+    for size in (9.5, 8.5, 7.5, 6.5, 5.5, 4.5):
+        for label in labels:
+            label.set_fontsize(size)
+        height = size * figure.dpi / 72.0 * 1.3
+        centres = spread_out(ends, [height] * len(lines), box.y0 - 2.0 * height, box.y1)
+        widest = max(label.get_window_extent().x1 for label in labels)
+        if centres is not None and widest < MARGIN * SIZE[0] * figure.dpi:
             break
     else:
-        axes.legend([name for name, _, _ in lines], loc="upper left", ncols=4, fontsize=6)
+        for label in labels:
+            label.remove()
+        axes.legend(axes.lines, [_short(name) for name, _, _ in lines], loc="lower right", ncols=4, fontsize=6)
         return
-    for (name, colour, value), centre in zip(lines, centres, strict=True):
+    for label, (_, colour, value), centre in zip(labels, lines, centres, strict=True):
         at = float(axes.transData.inverted().transform((0.0, centre))[1])
-        right = axes.get_yaxis_transform()
+        label.set_y(at)
         axes.plot([1.0, 1.02], [value, at], transform=right, color=colour, linewidth=0.7, clip_on=False)
-        words = f"{_short(name)} {value:.0f} °C"
-        axes.text(
-            1.024, at, words, transform=right, fontsize=size, color=colour, verticalalignment="center_baseline"
-        )
 
 
 def _short(name: str) -> str:
-    return name if len(name) <= NAME_AT_MOST else name[: NAME_AT_MOST - 1] + "…"
+    """A name with the middle left out where it is long; the end tells similar names apart."""
+    return name if len(name) <= NAME_AT_MOST else f"{name[: NAME_AT_MOST // 2]}…{name[-NAME_AT_MOST // 2 :]}"
 
 
 def _powers(axes: "Axes", setup: Setup, fine: Sampled, clock: Clock) -> None:
@@ -297,14 +309,14 @@ def _stages(figure: "Figure", axes: "Axes", setup: Setup, history: History, cloc
 
 def _frame(figure: "Figure", setup: Setup, case: Case, history: History) -> None:
     """Title, verdict, and the footer with the piece and the version."""
-    width = (0.985 - LEFT) * SIZE[0] * figure.dpi
+    width = (MARGIN - LEFT) * SIZE[0] * figure.dpi
     title = figure.text(LEFT, 0.978, "", fontweight="bold", va="top")
     fit_text(title, setup.title, width, (14.0, 12.0, 10.0))
     under = title.get_window_extent().y0 / (SIZE[1] * figure.dpi) - 0.008
     fit_text(figure.text(LEFT, under, "", va="top"), sentence(setup, history), width, (9.5, 8.5, 7.5))
     figure.text(LEFT, 0.022, piece_in_words(setup, case), fontsize=8.5, color="#333333", va="bottom")
     figure.text(
-        0.985, 0.022, f"thermal {own_version()}", fontsize=8.5, color="#333333", va="bottom", ha="right"
+        MARGIN, 0.022, f"thermal {own_version()}", fontsize=8.5, color="#333333", va="bottom", ha="right"
     )
     if off_spans(history):
         figure.text(LEFT, 0.045, "grey: power off", fontsize=8.5, color="#333333", va="bottom")
