@@ -5,12 +5,15 @@ Arrays are float64; n cells. Kelvin and SI; AC values are rms unless the name sa
 
 from collections.abc import Callable
 from dataclasses import dataclass
-from typing import Literal, Protocol
+from typing import Literal, Protocol, TypeVar
 
 import numpy as np
 import numpy.typing as npt
 
 Array = npt.NDArray[np.float64]
+
+Real = TypeVar("Real", float, Array)
+"""A number or an array of them."""
 
 DemandKind = Literal["absorbed_power", "supply_power", "coil_current", "coil_voltage", "surface_field", "off"]
 Limit = Literal["power", "current", "voltage", "field"]
@@ -94,9 +97,9 @@ class BoundaryLoss(Protocol):
         """Account the loss is booked on."""
         ...
 
-    def flux(self, T_surface: Array, T_peak: Array) -> tuple[Array, Array]:
-        """Flux out of the workpiece (s,) [W/m2] and its slope with T_surface (s,) [W/(m2 K)].
+    def flux(self, T_surface: Real, T_peak: Real) -> tuple[Real, Real]:
+        """Flux out of the workpiece [W/m2] and its slope with T_surface [W/(m2 K)], at one place or at (s,).
 
-        T_surface : (s,) [K] ; T_peak : (s,) [K] hottest this face has been, for surfaces that keep their oxide.
+        T_surface : [K] ; T_peak : [K] hottest this face has been, for surfaces that keep their oxide.
         """
         ...

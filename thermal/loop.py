@@ -14,7 +14,7 @@ from thermal.results.history import History, StageRecord, Status
 from thermal.results.recorder import Recorder
 from thermal.schedule import Stage
 from thermal.setup import Setup
-from thermal.stepper import LANDING, Moment, Stepper, account_names
+from thermal.stepper import LANDING, Hottest, Moment, Stepper, account_names
 
 SETTLED = 1e-3
 """Net heat below this share of what is absorbed counts as settled."""
@@ -62,9 +62,9 @@ def march(setup: Setup) -> Iterator[State]:
 
 def _march_stage(setup: Setup, number: int, stage: Stage, book: "_Book") -> Iterator[State]:
     if isinstance(stage.control, HoldTemperature):
-        ceiling = max(book.hottest_surface, stage.control.set_point)
+        ceiling = max(book.hottest.surfaces["outer"], stage.control.set_point)
         stage = replace(stage, control=replace(stage.control, ceiling=ceiling))
-    stepper = Stepper(setup, stage, book.T_peak)
+    stepper = Stepper(setup, stage, book.hottest)
     watch = _Watch(stage)
     begun = book.clock
     end_time = math.inf if stage.longest is None else begun + stage.longest
@@ -75,7 +75,7 @@ def _march_stage(setup: Setup, number: int, stage: Stage, book: "_Book") -> Iter
         room = setup.T_end - readings["maximum"]
         return min(room, stage.stop.distance(readings)) if stage.stop else room
 
-    now = stepper.moment(book.H, np.zeros(1), book.recent, may_start=True)
+    now = stepper.moment(book.H, np.zeros(1), book.recent)
     if stage.stop and stage.stop.distance(stepper.readings(now.extended)) <= 0.0:
         yield book.state(number, stepper, now, 0.0, watch.record(begun, begun, "already there", met=True))
         return
@@ -117,8 +117,8 @@ class _Book:
         mesh = setup.section.mesh
         self.H = setup.section.table.enthalpy(np.full(mesh.volume.size, setup.T_initial))
         self.clock = 0.0
-        self.T_peak = {name: np.full(face.cells.size, setup.T_initial) for name, face in mesh.faces.items()}
-        self.hottest_surface = setup.T_initial
+        surfaces = {name: setup.T_initial for name in mesh.faces if name != "ends"}
+        self.hottest = Hottest(surfaces, np.full(mesh.volume.size, setup.T_initial))
         self.recent: tuple[OperatingPoint, EddyField] | None = None
         self.over = False
         self._volume = mesh.volume
@@ -131,9 +131,7 @@ class _Book:
         self._gained = self._gained + gained
         self.clock = clock
         self.H = end.H
-        for name, face in end.faces.items():
-            self.T_peak[name] = np.maximum(self.T_peak[name], face.T_surface)
-        self.hottest_surface = max(self.hottest_surface, float(end.extended[-1]))
+        self.hottest.see(end.faces)
         if end.field.power > 0.0:
             self.recent = (end.point, end.field)
 
@@ -197,7 +195,7 @@ class _Watch:
         there if it goes on slowing down as it did over the last two steps.
         """
         absorbed = now.field.power
-        lost = sum(float(loss.sum()) for face in now.faces.values() for loss in face.loss)
+        lost = sum(float(np.sum(loss)) for face in now.faces.values() for loss in face.loss)
         earlier, self._distance = self._distance, distance
         last, self._approach = self._approach, None if earlier is None else (earlier - distance) / step
         if abs(absorbed - lost) > SETTLED * max(absorbed, lost):

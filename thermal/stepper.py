@@ -3,6 +3,7 @@
 Knows the parts of a Setup only through their roles.
 """
 
+import math
 from collections.abc import Callable
 from dataclasses import dataclass, replace
 
@@ -10,8 +11,8 @@ import numpy as np
 
 from thermal.conduction.assemble import FaceState
 from thermal.conduction.step import Feedback, Matrix, Rates, Step, rosenbrock_step
+from thermal.constants import ZERO_CELSIUS
 from thermal.errors import NoConvergence, OutOfRange
-from thermal.geometry.mesh import Index
 from thermal.interfaces import Array, EddyField, OperatingPoint
 from thermal.schedule import Stage
 from thermal.setup import Setup
@@ -26,115 +27,160 @@ LANDING = 1e-3
 ELECTRICAL = ("supply", "coil", "tank")
 
 
-@dataclass(frozen=True)
+@dataclass
+class Hottest:
+    """How hot the faces have been [K], for surfaces that keep their oxide.
+
+    surfaces : outer (and bore) -> [K] ; ends : (n,).
+    """
+
+    surfaces: dict[str, float]
+    ends: Array
+
+    def see(self, faces: dict[str, FaceState]) -> None:
+        """Take over the temperatures of an accepted step."""
+        for name, face in faces.items():
+            if isinstance(face.T_surface, float):
+                self.surfaces[name] = max(self.surfaces[name], face.T_surface)
+            else:
+                self.ends = np.maximum(self.ends, face.T_surface)
+
+
+@dataclass(frozen=True, slots=True)
 class Moment:
     """The workpiece at one instant, with everything that follows from its enthalpy.
 
-    H, T : (n,) ; extended : (n + 2,) [K] core, cells, surface ; memory : of the control [W] ; faces : face -> state ;
-    field, point ; rates ; matrix : where a step may start here ; trend : (n,) mean dH/dt of the step that led here.
+    H : (n,) ; extended : (n + 2,) [K] core, cells, surface ; memory : of the control [W] ; faces : face -> state ;
+    field, point ; rates ; matrix : of a step that starts here ; trend : (n,) mean dH/dt of the step that led here.
     """
 
     H: Array
-    T: Array
     extended: Array
     memory: Array
     faces: dict[str, FaceState]
     field: EddyField
     point: OperatingPoint
     rates: Rates
-    matrix: Matrix | None
+    matrix: Matrix
     trend: Array
+
+
+@dataclass(slots=True)
+class _Conduction:
+    """What conduction and losses make of an enthalpy: T (n,), flow into cells (n,) [W], accounts (p,) [W]."""
+
+    T: Array
+    conductance: Array
+    heat_flow: Array
+    accounts: Array
+    lost: float
+    faces: dict[str, FaceState]
+    dT_dH: Array | None
+    slopes: list[tuple[int, int | slice, float | Array]]
 
 
 class Stepper:
     """Advances the workpiece within one stage."""
 
-    def __init__(self, setup: Setup, stage: Stage, T_peak: dict[str, Array]) -> None:
+    def __init__(self, setup: Setup, stage: Stage, hottest: Hottest) -> None:
         self.setup = setup
         self.stage = stage
-        self.T_peak = T_peak
+        self.hottest = hottest
         self.accounts = account_names(setup)
-        # A face that loses nothing still has a surface temperature, unless that is the cells' own.
+        # End faces that lose nothing need no evaluation; the outer surface and the bore have a temperature to find.
         self._faces = [
             (name, losses, [self.accounts.index(loss_account(name, loss.name)) for loss in losses])
             for name, losses in setup.losses[stage.place].items()
             if losses or name != "ends"
         ]
-        n = setup.section.mesh.volume.size
+        self._volume = setup.section.mesh.volume
+        n = self._volume.size
         self._idle_field = EddyField(np.zeros(n), 0.0, 0j, 0.0, np.ones(n), 0)
-        nothing = 0.0 if setup.has_coil else float("nan")
+        nothing = 0.0 if setup.has_coil else math.nan
         self._idle_point = OperatingPoint(
-            setup.frequency, nothing, nothing, nothing, nothing, 0.0, float("nan"), None, None
+            setup.frequency, nothing, nothing, nothing, nothing, 0.0, math.nan, None, None
         )
         self.field_solves = 0
 
     def moment(
-        self,
-        H: Array,
-        memory: Array,
-        guess: tuple[OperatingPoint, EddyField] | None,
-        may_start: bool,
-        trend: Array | None = None,
+        self, H: Array, memory: Array, guess: tuple[OperatingPoint, EddyField] | None, trend: Array | None = None
     ) -> Moment:
-        """Everything that follows from H (n,) [J/m3]; with the matrix where a step may start here."""
-        setup, section = self.setup, self.setup.section
+        """Everything that follows from H (n,) [J/m3] and the memory of the control."""
+        here = self._conduct(H, with_slopes=True)
+        extended = self._extended(here)
+        rates, point, field = self._drive(here, self.readings(extended), memory, guess)
+        assert here.dT_dH is not None
+        clipped = point is self._idle_point or point.limit is not None
+        feedback = None if clipped else self._feedback(here.dT_dH, field, rates.accounts)
+        matrix = Matrix(here.conductance, here.dT_dH, tuple(here.slopes), feedback)
+        if trend is None:
+            trend = rates.heat_flow / self._volume
+        return Moment(H, extended, memory, here.faces, field, point, rates, matrix, trend)
+
+    def _conduct(self, H: Array, with_slopes: bool) -> _Conduction:
+        section = self.setup.section
         T = section.table.temperature(H)
         k = section.conductivity(T)
         conductance = section.conductances(k)
         flow = conductance * (T[:-1] - T[1:])
         net = np.zeros_like(T)
-        net[:-1] -= flow
+        net[:-1] = -flow
         net[1:] += flow
-        dT_dH = section.table.slope(H) if may_start else None
-        accounts = np.zeros(len(self.accounts))
-        faces: dict[str, FaceState] = {}
-        slopes: list[tuple[int, Index, Array]] = []
-        lost = 0.0
+        dT_dH = section.table.slope(H) if with_slopes else None
+        here = _Conduction(T, conductance, net, np.zeros(len(self.accounts)), 0.0, {}, dT_dH, [])
         for name, losses, rows in self._faces:
-            state = faces[name] = section.face_state(name, losses, T, k, flow, dT_dH, self.T_peak[name])
-            cells = section.mesh.faces[name].cells
-            for row, loss in zip(rows, state.loss, strict=True):
+            cells: int | slice
+            if name == "ends":
+                face = section.ends_state(losses, T, dT_dH, self.hottest.ends)
+                cells = slice(None)
+            else:
+                face = section.surface_state(name, losses, T, k, flow, dT_dH, self.hottest.surfaces[name])
+                cells = -1 if name == "outer" else 0
+            here.faces[name] = face
+            for row, loss in zip(rows, face.loss, strict=True):
                 net[cells] -= loss
-                total = float(loss.sum())
-                accounts[row] += total
-                lost += total
-            slopes += [(row, cells, slope) for row, slope in zip(rows, state.slope, strict=False)]
-        bore = faces.get("bore")
-        extended = setup.sampler.extended(
-            T, float(faces["outer"].T_surface[0]), float(bore.T_surface[0]) if bore else None
-        )
-        control = self.stage.control
-        readings = self.readings(extended) if control.needs_readings else {}
-        demand = control.demand(readings, lost, float(memory[0]))
+                total = loss if isinstance(loss, float) else float(loss.sum())
+                here.accounts[row] += total
+                here.lost += total
+            if with_slopes:
+                here.slopes += [(row, cells, slope) for row, slope in zip(rows, face.slope, strict=True)]
+        return here
+
+    def _drive(
+        self,
+        here: _Conduction,
+        readings: dict[str, float],
+        memory: Array,
+        guess: tuple[OperatingPoint, EddyField] | None,
+    ) -> tuple[Rates, OperatingPoint, EddyField]:
+        setup, control = self.setup, self.stage.control
+        demand = control.demand(readings, here.lost, float(memory[0]))
         if demand.kind == "off":
             point, field = self._idle_point, self._idle_field
         else:
-            if guess is not None and guess[1].power <= 0.0:
-                guess = None
-            response = setup.source.at(T)
+            response = setup.source.at(here.T)
 
             def field_of(excitation: float, frequency: float, start: EddyField | None) -> EddyField:
                 found = response(excitation, frequency, start)
                 self.field_solves += found.solves
                 return found
 
-            point, field = setup.supply.operate(field_of, demand, guess)
-        net += section.mesh.volume * field.heat
+            usable = guess if guess is not None and guess[1].power > 0.0 else None
+            point, field = setup.supply.operate(field_of, demand, usable)
+        accounts = here.accounts
         accounts[0] = field.power
         if setup.has_coil:
-            accounts[1] = point.supply_power * setup.share
-            accounts[2] = point.coil_loss * setup.share
-            accounts[3] = point.tank_loss * setup.share
+            drawn = (point.supply_power, point.coil_loss, point.tank_loss)
+            accounts[1 : 1 + len(ELECTRICAL)] = [setup.share * watts for watts in drawn]
         clipped = demand.kind == "off" or point.limit is not None
         memory_rate = np.array([control.memory_rate(readings, clipped)])
-        matrix = None
-        if dT_dH is not None:
-            feedback = None if clipped else self._feedback(dT_dH, field, accounts)
-            matrix = Matrix(conductance, dT_dH, tuple(slopes), feedback)
-        rates = Rates(net, accounts, memory_rate)
-        if trend is None:
-            trend = net / section.mesh.volume
-        return Moment(H, T, extended, memory, faces, field, point, rates, matrix, trend)
+        return Rates(here.heat_flow + self._volume * field.heat, accounts, memory_rate), point, field
+
+    def _extended(self, here: _Conduction) -> Array:
+        surface = here.faces["outer"].T_surface
+        bore = here.faces["bore"].T_surface if "bore" in here.faces else None
+        assert isinstance(surface, float) and not isinstance(bore, np.ndarray)
+        return self.setup.sampler.extended(here.T, surface, bore)
 
     def _feedback(self, dT_dH: Array, field: EddyField, accounts: Array) -> Feedback | None:
         """What the controller adds to the matrix: without it, it would hold the steps to its response time."""
@@ -149,7 +195,7 @@ class Stepper:
         per_watt = np.zeros_like(accounts)
         electrical = 1 + len(ELECTRICAL) if self.setup.has_coil else 1
         per_watt[:electrical] = accounts[:electrical] / field.power
-        return Feedback(self.setup.section.mesh.volume * field.heat / field.power, pull, per_watt)
+        return Feedback(self._volume * field.heat / field.power, pull, per_watt)
 
     def readings(self, extended: Array) -> dict[str, float]:
         """Every reading [K] by name."""
@@ -168,21 +214,21 @@ class Stepper:
 
     def try_step(self, start: Moment, step: float) -> tuple[Step, Moment]:
         """One step of a given length from a moment; the embedded error is not judged."""
-        assert start.matrix is not None
         recent = (start.point, start.field)
 
         def rates(H: Array, memory: Array) -> Rates:
             nonlocal recent
-            here = self.moment(H, memory, recent, may_start=False)
-            if here.field.power > 0.0:
-                recent = (here.point, here.field)
-            return here.rates
+            here = self._conduct(H, with_slopes=False)
+            wanted = self.stage.control.needs_readings
+            readings = self.readings(self._extended(here)) if wanted else {}
+            found, point, field = self._drive(here, readings, memory, recent)
+            if field.power > 0.0:
+                recent = (point, field)
+            return found
 
-        volume = self.setup.section.mesh.volume
         matrix = self._ahead(start, step)
-        taken = rosenbrock_step(start.H, start.memory, start.rates, matrix, volume, step, rates)
-        end = self.moment(taken.H, taken.extra, recent, may_start=True, trend=(taken.H - start.H) / step)
-        return taken, end
+        taken = rosenbrock_step(start.H, start.memory, start.rates, matrix, self._volume, step, rates)
+        return taken, self.moment(taken.H, taken.extra, recent, (taken.H - start.H) / step)
 
     def _ahead(self, start: Moment, step: float) -> Matrix:
         """The matrix of a step, its dT/dH the larger of here and where each cell is heading.
@@ -190,16 +236,14 @@ class Stepper:
         A W-method stays stable with a matrix too stiff, not with one too soft, and dT/dH jumps where a cell leaves
         a transformation or melting.
         """
-        assert start.matrix is not None
         here = start.matrix.dT_dH
         dT_dH = np.maximum(here, self.setup.section.table.slope(start.H + step * start.trend))
         ratio = dT_dH / here
-        slopes = tuple((row, cells, slope * ratio[cells]) for row, cells, slope in start.matrix.slopes)
+        slopes = tuple((row, cells, ratio[cells] * slope) for row, cells, slope in start.matrix.slopes)
         return replace(start.matrix, dT_dH=dT_dH, slopes=slopes)
 
     def error_of(self, taken: Step, start: Moment, end: Moment) -> float:
         """Largest embedded error of a step [K] over the tolerance."""
-        assert start.matrix is not None and end.matrix is not None
         slope = np.maximum(start.matrix.dT_dH, end.matrix.dT_dH)
         return float(np.max(np.abs(taken.error) * slope)) / self.setup.tolerance
 
@@ -233,7 +277,7 @@ class Stepper:
             factor = max(SHRINK_AT_MOST, SAFETY * error ** (-1.0 / 3.0)) if np.isfinite(error) else 0.25
             step = length * factor
             if step < STEP_AT_LEAST:
-                hottest = float(start.T.max()) - 273.15
+                hottest = float(start.extended.max()) - ZERO_CELSIUS
                 raise NoConvergence(
                     "the time step fell below a nanosecond"
                     f" (hottest cell {hottest:.0f} °C){': ' + failure if failure else ''}"
@@ -241,9 +285,7 @@ class Stepper:
 
     def first_step(self, start: Moment) -> float:
         """Length [s] of the first step after a switch: a fraction of the tolerance at the present rate."""
-        assert start.matrix is not None
-        volume = self.setup.section.mesh.volume
-        rate = float(np.max(np.abs(start.rates.heat_flow / volume) * start.matrix.dT_dH))
+        rate = float(np.max(np.abs(start.rates.heat_flow / self._volume) * start.matrix.dT_dH))
         return 5.0 * self.setup.tolerance / rate if rate > 0.0 else 1.0
 
     def land(

@@ -20,10 +20,10 @@ from thermal.boundary.correlations import (
     plate_in_parallel_flow,
     vertical_plate,
 )
-from thermal.boundary.table import Law, Real, by_face, constant_law
+from thermal.boundary.table import Law, by_face, constant_law
 from thermal.constants import GRAVITY, ZERO_CELSIUS
 from thermal.errors import OutOfRange
-from thermal.interfaces import Array
+from thermal.interfaces import Array, Real
 
 Coefficient = Callable[[Array], Array]
 Nusselt = Callable[[Array, Array], Array]
@@ -49,7 +49,7 @@ class Convection:
     T_surroundings: float
     coefficient: Law
 
-    def flux(self, T_surface: Array, T_peak: Array) -> tuple[Array, Array]:
+    def flux(self, T_surface: Real, T_peak: Real) -> tuple[Real, Real]:
         """Flux (s,) [W/m2] and slope (s,) [W/(m2 K)] at T_surface (s,) [K]. Errors: OutOfRange."""
         return by_face(self._exchange, T_surface, T_peak)
 

@@ -5,7 +5,8 @@ from dataclasses import dataclass
 import numpy as np
 
 from materials.property import Property
-from thermal.boundary.table import Law, Real, law_of, pick
+from thermal.boundary.table import Law, law_of, pick
+from thermal.interfaces import Real
 
 
 @dataclass(frozen=True, eq=False)

@@ -13,10 +13,10 @@ from materials.gas import Gas
 from materials.property import Property
 from thermal.boundary.emissivity import Emissivity
 from thermal.boundary.radiation import exchange_factor
-from thermal.boundary.table import Law, Real, by_face, law_of, pick
+from thermal.boundary.table import Law, by_face, law_of, pick
 from thermal.constants import STEFAN_BOLTZMANN
 from thermal.errors import CaseError, NoConvergence
-from thermal.interfaces import Array
+from thermal.interfaces import Real
 
 _SETTLED = 1e-7  # [K] last Newton step; the error left is its square times a curvature below 0.01/K
 _MOST = 60
@@ -47,7 +47,7 @@ class LiningLoss:
     wall: float
     T_coil: float
 
-    def flux(self, T_surface: Array, T_peak: Array) -> tuple[Array, Array]:
+    def flux(self, T_surface: Real, T_peak: Real) -> tuple[Real, Real]:
         """Flux (s,) [W/m2] and slope (s,) [W/(m2 K)] at T_surface, hottest so far T_peak (s,) [K].
 
         Errors: OutOfRange beyond the data of gas, lining or emissivity.

@@ -4,9 +4,9 @@ from dataclasses import dataclass
 from math import sqrt
 
 from thermal.boundary.emissivity import Emissivity
-from thermal.boundary.table import Real, by_face, constant_law
+from thermal.boundary.table import by_face, constant_law
 from thermal.constants import STEFAN_BOLTZMANN
-from thermal.interfaces import Array
+from thermal.interfaces import Real
 
 
 def exchange_factor(e1: Real, e2: Real | float, area_ratio: float) -> tuple[Real, Real, Real]:
@@ -38,7 +38,7 @@ class Radiation:
     area_ratio: float = 0.0
     wall_emissivity: float = 1.0
 
-    def flux(self, T_surface: Array, T_peak: Array) -> tuple[Array, Array]:
+    def flux(self, T_surface: Real, T_peak: Real) -> tuple[Real, Real]:
         """Flux (s,) [W/m2] and slope (s,) [W/(m2 K)] at T_surface, hottest so far T_peak (s,) [K]."""
         return by_face(self._exchange, T_surface, T_peak)
 

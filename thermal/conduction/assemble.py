@@ -43,11 +43,14 @@ class EnthalpyTable:
 
 @dataclass(frozen=True, slots=True)
 class FaceState:
-    """One face at one moment: surface temperature (s,) [K], flux (s,) [W] and its slope dW/dH (s,) per loss."""
+    """One face at one moment: surface temperature [K], flux [W] and its slope [W m3/J] with H, per loss.
 
-    T_surface: Array
-    loss: tuple[Array, ...]
-    slope: tuple[Array, ...]
+    Numbers for a face of one cell, (s,) for the end faces.
+    """
+
+    T_surface: float | Array
+    loss: tuple[float | Array, ...]
+    slope: tuple[float | Array, ...]
 
 
 class Section:
@@ -66,16 +69,24 @@ class Section:
         self.conductivity = conductivity
         self._over_left = mesh.gap_left / mesh.area
         self._over_right = mesh.gap_right / mesh.area
-        # Faces with a half cell in front: the link on the inner side of that cell, and its sign towards the face.
-        self._inner_side = {"outer": (slice(-1, None), 1.0)}
-        if "bore" in mesh.faces:
-            self._inner_side["bore"] = (slice(0, 1), -1.0)
+        # Surfaces with a half cell in front: the cell, the link on its inner side and the sign towards the surface.
+        places = {"outer": (-1, -1, 1.0), "bore": (0, 0, -1.0)}
+        self._surfaces = {
+            name: (
+                *place,
+                float(mesh.faces[name].area[0]),
+                float(mesh.faces[name].gap[0]),
+                float(mesh.area[place[1]]),
+            )
+            for name, place in places.items()
+            if name in mesh.faces
+        }
 
     def conductances(self, k: Array) -> Array:
         """Conductance of the links (m,) [W/K]."""
         return np.asarray(1.0 / (self._over_left / k[:-1] + self._over_right / k[1:]))
 
-    def face_state(
+    def surface_state(
         self,
         name: str,
         losses: tuple[BoundaryLoss, ...],
@@ -83,41 +94,38 @@ class Section:
         k: Array,
         flow: Array,
         dT_dH: Array | None,
-        T_peak: Array,
+        T_peak: float,
     ) -> FaceState:
-        """Surface temperature and losses of a face.
+        """Surface temperature and losses of the outer surface or the bore.
 
         With q_s the loss and q_in the flux through the inner side of the surface cell, the parabola through that
         cell gives T_s = T_1 - (gap/k)(3 q_s + q_in)/4; one Newton step from q_s = q_in solves it to well below a
         millikelvin, as the gap is thin.
 
         flow : (m,) [W] through the links, towards the outer surface ; dT_dH : (n,) where the slopes are wanted ;
-        T_peak : (s,) [K] hottest so far.
+        T_peak : [K] hottest so far.
         """
-        face = self.mesh.faces[name]
-        surface = T[face.cells]
-        stiffness: Array | None = None
-        if name in self._inner_side:
-            link, sign = self._inner_side[name]
-            stiffness = 0.75 * face.gap / k[face.cells]
-            q_in = sign * flow[link] / self.mesh.area[link]
-            base = surface - stiffness * (q_in / 3.0)
-            surface = base - stiffness * q_in
-            excess, slope = stiffness * q_in, np.ones(1)
-            for loss in losses:
-                q, dq = loss.flux(surface, T_peak)
-                excess = excess - stiffness * q
-                slope = slope + stiffness * dq
-            surface = surface + excess / slope
+        cell, link, sign, area, gap, link_area = self._surfaces[name]
+        stiffness = 0.75 * gap / float(k[cell])
+        q_in = sign * float(flow[link]) / link_area
+        surface = float(T[cell]) - stiffness * (4.0 / 3.0) * q_in
+        excess, steepness = stiffness * q_in, 1.0
+        for loss in losses:
+            q, dq = loss.flux(surface, T_peak)
+            excess -= stiffness * q
+            steepness += stiffness * dq
+        surface += excess / steepness
         fluxes = [loss.flux(surface, T_peak) for loss in losses]
-        watts = tuple(q * face.area for q, _ in fluxes)
+        watts = tuple(q * area for q, _ in fluxes)
         if dT_dH is None:
             return FaceState(surface, watts, ())
-        per_enthalpy = face.area * dT_dH[face.cells]
-        if stiffness is not None:
-            # dT_s/dT_1 with all losses of the face acting together.
-            slope = np.ones(1)
-            for _, dq in fluxes:
-                slope = slope + stiffness * dq
-            per_enthalpy = per_enthalpy / slope
+        # dT_s/dT_1 with all losses of the face acting together.
+        per_enthalpy = area * float(dT_dH[cell]) / (1.0 + stiffness * sum(dq for _, dq in fluxes))
         return FaceState(surface, watts, tuple(dq * per_enthalpy for _, dq in fluxes))
+
+    def ends_state(self, losses: tuple[BoundaryLoss, ...], T: Array, dT_dH: Array | None, T_peak: Array) -> FaceState:
+        """Losses of the end faces, every ring at its own temperature."""
+        area = self.mesh.faces["ends"].area
+        fluxes = [loss.flux(T, T_peak) for loss in losses]
+        slope = () if dT_dH is None else tuple(dq * (area * dT_dH) for _, dq in fluxes)
+        return FaceState(T, tuple(q * area for q, _ in fluxes), slope)

@@ -12,7 +12,6 @@ import numpy as np
 from scipy.linalg.lapack import dgttrf, dgttrs
 
 from thermal.errors import NoConvergence
-from thermal.geometry.mesh import Index
 from thermal.interfaces import Array
 
 GAMMA_DIAGONAL = 0.43586652150845900
@@ -31,6 +30,8 @@ GAMMA = (
 B = (0.24212380706095346, -1.2232505839045147, 1.5452602553351020, GAMMA_DIAGONAL)
 B_EMBEDDED = (0.37810903145819369, -0.096042292212423178, 0.5, 0.5 * GAMMA_DIAGONAL)
 STAGES = 4
+_ALPHA = [np.array(row) for row in ALPHA]
+_CARRIED = [np.array(row) / GAMMA_DIAGONAL for row in GAMMA]
 _WEIGHTS = np.array(B)
 _DIFFERENCE = _WEIGHTS - np.array(B_EMBEDDED)
 
@@ -65,13 +66,13 @@ class Feedback:
 class Matrix:
     """The approximate Jacobian of heat_flow: V d/dt -> -(K dT/dH + loss slopes), frozen at the start of the step.
 
-    conductance : (m,) [W/K] ; dT_dH : (n,) ; slopes : per account that depends on the state, its index, the cells
-    and d(account)/dH (s,) [W m3/J] there ; feedback : of a controller, or None.
+    conductance : (m,) [W/K] ; dT_dH : (n,) ; slopes : per account that depends on the state, its index, the cell
+    (or all) and d(account)/dH [W m3/J] there ; feedback : of a controller, or None.
     """
 
     conductance: Array
     dT_dH: Array
-    slopes: tuple[tuple[int, Index, Array], ...]
+    slopes: tuple[tuple[int, int | slice, float | Array], ...]
     feedback: Feedback | None = None
 
 
@@ -125,26 +126,17 @@ def rosenbrock_step(
         answer, _ = dgttrs(*lu, feedback.share)
         reply = shift / (1.0 + shift * float(feedback.pull @ answer))
 
-    increments: list[Array] = []
-    gained: list[Array] = []
-    memory: list[Array] = []
+    n, p = H.size, first.accounts.size
+    # Increments of cells, accounts and further unknowns, a row a stage.
+    k = np.empty((STAGES, n + p + extra.size))
+    here = first
     for i in range(STAGES):
-        if i == 0:
-            here = first
-        else:
-            H_stage, extra_stage = H, extra
-            for a, k, j in zip(ALPHA[i], increments, memory, strict=False):
-                if a:
-                    H_stage = H_stage + a * k
-                    extra_stage = extra_stage + a * j
-            here = rates(H_stage, extra_stage)
-        carried: Array | None = None
-        for g, k in zip(GAMMA[i], increments, strict=False):
-            carried = g * k if carried is None else carried + g * k
-        right = step * here.heat_flow
-        if carried is not None:
-            carried /= GAMMA_DIAGONAL
-            right += volume * carried
+        right = step * here.heat_flow if i == 0 else None
+        if i > 0:
+            ahead = _ALPHA[i] @ k[:i]
+            here = rates(H + ahead[:n], extra + ahead[n + p :])
+            carried = _CARRIED[i] @ k[:i, :n]
+            right = step * here.heat_flow + volume * carried
         solved, info = dgttrs(*lu, right)
         if info != 0:
             raise NoConvergence("the heat equations of the section could not be solved")
@@ -154,14 +146,10 @@ def rosenbrock_step(
             solved = solved - fall * answer
             account -= fall * feedback.accounts
         for index, cells, slope in matrix.slopes:
-            account[index] += shift * float(slope @ solved[cells])
-        increments.append(solved if carried is None else solved - carried)
-        gained.append(account)
-        # The further unknowns are treated explicitly: their row of the matrix is zero.
-        memory.append(step * here.extra)
-    k = np.array(increments)
-    H_new = H + _WEIGHTS @ k
-    error = _DIFFERENCE @ k
-    total = _WEIGHTS @ np.array(gained)
-    extra_new = extra + _WEIGHTS @ np.array(memory)
-    return Step(H_new, total, extra_new, error)
+            account[index] += shift * float(np.dot(slope, solved[cells]))
+        k[i, :n] = solved if i == 0 else solved - carried
+        k[i, n : n + p] = account
+        # The further unknowns are treated explicitly: their rows of the matrix are zero.
+        k[i, n + p :] = step * here.extra
+    gain = _WEIGHTS @ k
+    return Step(H + gain[:n], gain[n : n + p], extra + gain[n + p :], _DIFFERENCE @ k[:, :n])

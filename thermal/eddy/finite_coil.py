@@ -92,7 +92,10 @@ class SectionSource:
                 profile, solves = known[frequency], 0
                 H_surface = self._surface_field(profile.impedance, excitation, frequency)
             else:
-                start = guess.mu_r if guess is not None else self._first_mu(factor, excitation)
+                if guess is None or self.magnetics.linear:
+                    start = self._first_mu(factor, excitation)
+                else:
+                    start = guess.mu_r
                 profile, H_surface, solves = self.solver.settled(
                     resistivity,
                     self.magnetics,

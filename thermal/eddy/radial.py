@@ -22,7 +22,7 @@ Array = npt.NDArray[np.float64]
 ComplexArray = npt.NDArray[np.complex128]
 
 SOLVES_AT_MOST = 60
-MU_TOLERANCE = 2e-5
+IMPEDANCE_TOLERANCE = 1e-5
 
 
 class Magnetics(Protocol):
@@ -76,7 +76,6 @@ class RadialSolver:
             self._surface = 1.0
             self._bore = 0j
         self._g_twice = self._inner + self._outer
-        self._volume = mesh.volume
 
     def profile(self, resistivity: Array, mu_r: Array, frequency: float) -> Profile:
         """Field for given cell properties.
@@ -132,7 +131,8 @@ class RadialSolver:
     ) -> tuple[Profile, float, int]:
         """Field whose mu_r follows the local amplitude: fixed point, Anderson-accelerated, nothing damped.
 
-        D. G. Anderson, J. ACM 12 (1965) 547, depth 1. Converged when the heat-weighted mean change of mu_r is 2e-5.
+        D. G. Anderson, J. ACM 12 (1965) 547, depth 1. Converged when no more
+        than 1e-5 of the surface impedance can change.
 
         resistivity, factor : (n,), factor as Magnetics.factor(T) ; surface_field : impedance [ohm] -> H at the
         surface [A/m], rms (a constant, or what a coil makes of it) ; mu_r : (n,) first guess.
@@ -143,6 +143,7 @@ class RadialSolver:
         ------
         NoConvergence : after 60 solves.
         """
+        flux = 2.0 * math.pi * frequency * MU_0 / (self._per_volume * self._surface)
         before: tuple[Array, Array] | None = None
         for solves in range(1, SOLVES_AT_MOST + 1):
             profile = self.profile(resistivity, mu_r, frequency)
@@ -150,17 +151,18 @@ class RadialSolver:
             if magnetics.linear:
                 return profile, H_surface, solves
             size = np.abs(profile.H)
-            H_peak = (H_surface / math.sqrt(2.0)) * (size[:-1] + size[1:])
-            following = 1.0 + factor * magnetics.effective_susceptibility(H_peak)
+            middle = size[:-1] + size[1:]
+            following = 1.0 + factor * magnetics.effective_susceptibility((H_surface / math.sqrt(2.0)) * middle)
             off = following / mu_r - 1.0
-            heat = profile.heat * self._volume
-            if float(heat @ np.abs(off)) < MU_TOLERANCE * float(heat.sum()):
+            # What a relative change of mu_r in a cell does to the surface impedance, to first order: j w mu H^2 dV.
+            weight = flux * mu_r * (0.25 * middle * middle)
+            if float(weight @ np.abs(off)) < IMPEDANCE_TOLERANCE * abs(profile.impedance):
                 return profile, H_surface, solves
             mu_r = following
             if before is not None:
-                # Anderson's rule over the last two solves, weighted by heat.
+                # Anderson's rule over the last two solves, relative changes weighted by what they do.
                 change = off - before[1]
-                weighted = heat * change
+                weighted = weight * change
                 if (norm := float(weighted @ change)) > 0.0:
                     blend = float(weighted @ off) / norm
                     mu_r = np.maximum(following - blend * (following - before[0]), 1.0)

@@ -11,7 +11,25 @@ import numpy as np
 from thermal.case import Case
 from thermal.constants import ZERO_CELSIUS
 from thermal.control import HoldTemperature
-from thermal.report.labels import fit_text, overlap, spread_out
+from thermal.report.labels import fit_text, spread_out
+from thermal.report.style import (
+    DPI,
+    LEFT,
+    LEVEL_COLOUR,
+    LEVEL_ROOM,
+    LIMIT_COLOUR,
+    LONG_RUN,
+    MARGIN,
+    NAME_AT_MOST,
+    OFF_COLOUR,
+    OWN_COLOURS,
+    OWN_DASHES,
+    RIGHT,
+    SIZE,
+    STYLES,
+    SVG_METADATA,
+    styled,
+)
 from thermal.report.versions import own_version
 from thermal.report.words import piece_in_words
 from thermal.results.dense import Sampled, sample
@@ -25,47 +43,6 @@ if TYPE_CHECKING:
     from matplotlib.figure import Figure
     from matplotlib.text import Text
 
-SIZE = (11.69, 8.27)
-DPI = 150
-LEFT, RIGHT, MARGIN = 0.075, 0.855, 0.985
-"""Bounds of the panels, and of everything that is written, as shares of the width."""
-RC = {
-    "font.family": "DejaVu Sans",
-    "font.size": 10.0,
-    "axes.titlesize": 10.0,
-    "axes.spines.top": False,
-    "axes.spines.right": False,
-    "axes.edgecolor": "#404040",
-    "axes.linewidth": 0.8,
-    "axes.grid": True,
-    "grid.color": "#DDDDDD",
-    "grid.linewidth": 0.6,
-    "lines.linewidth": 1.8,
-    "text.parse_math": False,
-    "text.hinting": "none",
-    "svg.hashsalt": "thermal",
-}
-STYLES = {
-    "surface": ("#B5401D", "-", 2.2),
-    "core": ("#1B5AA6", (0, (6, 2)), 2.2),
-    "mean": ("#4F4F4F", "-", 1.0),
-    "maximum": ("#111111", (0, (1, 1.6)), 1.8),
-}
-"""Reading -> colour, dashes and width; told apart in grey by dashes and width alone."""
-OWN_COLOURS = ("#00776B", "#8C4A94", "#A67800", "#5E7F13")
-OWN_DASHES = ((0, (5, 1.5, 1, 1.5)), (0, (3, 1.5)), (0, (8, 2, 1, 2, 1, 2)), (0, (2, 1)))
-LEVEL_COLOUR = "#6A6A6A"
-OFF_COLOUR = "#ECECEC"
-LIMIT_COLOUR = "#A67800"
-LEVEL_ROOM = 13.0
-"""Height of a level's label [points]."""
-NAME_AT_MOST = 18
-"""Longest name of a reading beside its curve, in letters."""
-LONG_RUN = 600.0
-"""Above this many seconds the time axis is in minutes."""
-SVG_METADATA = {"Date": None}
-"""Leaves the date out: the same run gives the same file."""
-
 
 @dataclass(frozen=True)
 class Clock:
@@ -77,9 +54,7 @@ class Clock:
 
 def save_curves(setup: Setup, case: Case, history: History, folder: Path) -> None:
     """Write curves.png and curves.svg into an existing folder."""
-    import matplotlib
-
-    with matplotlib.rc_context(RC), warnings.catch_warnings():
+    with styled(), warnings.catch_warnings():
         # A title may hold characters the font lacks; a box in their place is no reason to fail or to talk.
         warnings.filterwarnings("ignore", message="Glyph .* missing from", category=UserWarning)
         figure = curves_figure(setup, case, history)
@@ -88,7 +63,7 @@ def save_curves(setup: Setup, case: Case, history: History, folder: Path) -> Non
 
 
 def curves_figure(setup: Setup, case: Case, history: History) -> "Figure":
-    """The picture; drawn with the settings RC in force."""
+    """The picture; to be drawn inside styled()."""
     from matplotlib.backends.backend_agg import FigureCanvasAgg
     from matplotlib.figure import Figure
 
@@ -176,9 +151,7 @@ def _levels(axes: "Axes", setup: Setup) -> None:
         placed.append(_level_label(axes, f"{name} {height:.0f} °C", height, heights, placed))
 
 
-def _level_label(
-    axes: "Axes", words: str, height: float, heights: list[float], placed: "list[Text]"
-) -> "Text":
+def _level_label(axes: "Axes", words: str, height: float, heights: list[float], placed: "list[Text]") -> "Text":
     """A label above its line, below it where another line is close above; moved right clear of earlier labels."""
     from matplotlib.patheffects import withStroke
 
@@ -201,14 +174,15 @@ def _level_label(
         path_effects=[withStroke(linewidth=2.5, foreground="white")],
     )
     shift = 6.0
-    while (hit := next((p for p in placed if _collide(p, label)), None)) is not None:
+    while (hit := _hit(label, placed)) is not None:
         shift += (hit.get_window_extent().x1 - label.get_window_extent().x0) * points + 8.0
         label.set_position((shift, label.get_position()[1]))
     return label
 
 
-def _collide(a: "Text", b: "Text") -> bool:
-    return overlap(a.get_window_extent(), b.get_window_extent())
+def _hit(label: "Text", placed: "list[Text]") -> "Text | None":
+    box = label.get_window_extent()
+    return next((other for other in placed if box.overlaps(other.get_window_extent())), None)
 
 
 def _end_labels(axes: "Axes", lines: list[tuple[str, str, float]]) -> None:
@@ -217,9 +191,7 @@ def _end_labels(axes: "Axes", lines: list[tuple[str, str, float]]) -> None:
     right = axes.get_yaxis_transform()
     ends = [float(axes.transData.transform((0.0, value))[1]) for _, _, value in lines]
     labels = [
-        axes.text(
-            1.024, 0.0, f"{_short(name)} {value:.0f} °C", transform=right, color=colour, va="center_baseline"
-        )
+        axes.text(1.024, 0.0, f"{_short(name)} {value:.0f} °C", transform=right, color=colour, va="center_baseline")
         for name, colour, value in lines
     ]
     for size in (9.5, 8.5, 7.5, 6.5, 5.5, 4.5):
@@ -315,8 +287,6 @@ def _frame(figure: "Figure", setup: Setup, case: Case, history: History) -> None
     under = title.get_window_extent().y0 / (SIZE[1] * figure.dpi) - 0.008
     fit_text(figure.text(LEFT, under, "", va="top"), sentence(setup, history), width, (9.5, 8.5, 7.5))
     figure.text(LEFT, 0.022, piece_in_words(setup, case), fontsize=8.5, color="#333333", va="bottom")
-    figure.text(
-        MARGIN, 0.022, f"thermal {own_version()}", fontsize=8.5, color="#333333", va="bottom", ha="right"
-    )
+    figure.text(MARGIN, 0.022, f"thermal {own_version()}", fontsize=8.5, color="#333333", va="bottom", ha="right")
     if off_spans(history):
         figure.text(LEFT, 0.045, "grey: power off", fontsize=8.5, color="#333333", va="bottom")

@@ -1,6 +1,5 @@
 """The files of a run, written all at once or not at all."""
 
-import json
 import os
 import secrets
 import shutil
@@ -10,7 +9,7 @@ from thermal.case import Case, as_run
 from thermal.errors import ThermalError
 from thermal.report.curves import curves_csv, profiles_csv
 from thermal.report.figures import save_curves
-from thermal.report.summary import summary
+from thermal.report.summary import summary_text
 from thermal.results.history import History
 from thermal.setup import Setup
 
@@ -70,9 +69,8 @@ def write_results(folder: Path, setup: Setup, case: Case, history: History, *, f
 
 
 def _write(folder: Path, setup: Setup, case: Case, history: History) -> None:
-    told = json.dumps(summary(setup, case, history), indent=2, ensure_ascii=False, allow_nan=False)
     texts = {
-        "summary.json": told + "\n",
+        "summary.json": summary_text(setup, case, history),
         "curves.csv": curves_csv(setup, case, history),
         "profiles.csv": profiles_csv(setup, case, history),
         "case.toml": as_run(case),

@@ -1,23 +1,11 @@
-"""Keeping labels apart and inside the picture: positions along one line, boxes in a plane, lines of a title."""
+"""Keeping labels apart and inside the picture: positions along one line, lines of a title."""
 
+from bisect import bisect_right
 from collections.abc import Sequence
-from typing import TYPE_CHECKING, Protocol
+from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
     from matplotlib.text import Text
-
-
-class Box(Protocol):
-    """A rectangle in drawing units."""
-
-    @property
-    def x0(self) -> float: ...
-    @property
-    def x1(self) -> float: ...
-    @property
-    def y0(self) -> float: ...
-    @property
-    def y1(self) -> float: ...
 
 
 def spread_out(wanted: Sequence[float], sizes: Sequence[float], low: float, high: float) -> list[float] | None:
@@ -44,9 +32,7 @@ def spread_out(wanted: Sequence[float], sizes: Sequence[float], low: float, high
     return centres
 
 
-def _start(
-    members: Sequence[int], wanted: Sequence[float], sizes: Sequence[float], low: float, high: float
-) -> float:
+def _start(members: Sequence[int], wanted: Sequence[float], sizes: Sequence[float], low: float, high: float) -> float:
     """Start of a block whose members sit closest to where they want to be, kept inside low..high."""
     before, offsets = 0.0, []
     for m in members:
@@ -55,46 +41,44 @@ def _start(
     return min(max(sum(offsets) / len(offsets), low), high - before)
 
 
-def overlap(a: Box, b: Box) -> bool:
-    """Whether two boxes share area."""
-    return a.x0 < b.x1 and b.x0 < a.x1 and a.y0 < b.y1 and b.y0 < a.y1
-
-
 def fit_text(text: "Text", words: str, width: float, sizes: Sequence[float]) -> None:
-    """Set words on at most two lines of a width [pixels], in the first of the sizes that fits, cut with an ellipsis at last."""
+    """Set words on at most two lines of a width [pixels], in the first of the sizes that fits.
+
+    Words that fit in none of them are cut with an ellipsis.
+    """
+    lines: list[str] = []
     for size in sizes:
         text.set_fontsize(size)
-        lines = _wrapped(text, words, width)
+        lines = _lines(text, words, width)
         if len(lines) <= 2:
             break
     if len(lines) > 2:
-        second = lines[1]
-        text.set_text(second + "…")
-        while text.get_window_extent().width > width:
-            second = second[:-1]
-            text.set_text(second + "…")
-        lines = [lines[0], second + "…"]
+        end = lines[1]
+        while _width(text, f"{end}…") > width:
+            end = end[:-1]
+        lines = [lines[0], f"{end}…"]
     text.set_text("\n".join(lines))
 
 
-def _wrapped(text: "Text", words: str, width: float) -> list[str]:
-    """Lines of whole words no wider than a width [pixels]; a longer word is broken."""
-    lines = [""]
-    for word in words.split():
-        rest = word
-        while rest:
-            trial = f"{lines[-1]} {rest}".strip()
-            text.set_text(trial)
-            if text.get_window_extent().width <= width:
-                lines[-1], rest = trial, ""
-            elif lines[-1]:
-                lines.append("")
-            else:
-                cut = len(rest)
-                while cut > 1 and text.get_window_extent().width > width:
-                    cut -= 1
-                    text.set_text(rest[:cut])
-                lines[-1], rest = rest[:cut], rest[cut:]
-                if rest:
-                    lines.append("")
-    return lines
+def _lines(text: "Text", words: str, width: float) -> list[str]:
+    """Two lines no wider than a width, broken between words where possible, and a third with the rest if any."""
+    rest = " ".join(words.split())
+    lines: list[str] = []
+    while rest and len(lines) < 2:
+        room = _room(text, rest, width)
+        if room < len(rest) and " " in rest[1 : room + 1]:
+            room = rest.rindex(" ", 1, room + 1)
+        room = max(room, 1)
+        lines.append(rest[:room])
+        rest = rest[room:].lstrip()
+    return [*lines, rest] if rest else lines
+
+
+def _room(text: "Text", words: str, width: float) -> int:
+    """How many of the first letters fit a width."""
+    return bisect_right(range(len(words)), width, key=lambda n: _width(text, words[: n + 1]))
+
+
+def _width(text: "Text", words: str) -> float:
+    text.set_text(words)
+    return float(text.get_window_extent().width)

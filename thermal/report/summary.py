@@ -1,6 +1,7 @@
 """The result of a run as one JSON object; every name of a quantity ends in its unit."""
 
 import hashlib
+import json
 import math
 from typing import Any
 
@@ -11,7 +12,7 @@ from thermal.report.versions import versions
 from thermal.results.balance import relative_residual
 from thermal.results.history import History
 from thermal.results.stages import StageEnd, limit_spans, stage_ends
-from thermal.results.verdict import sentence, specific_energy
+from thermal.results.verdict import depth_of_maximum, sentence, specific_energy
 from thermal.setup import Setup
 
 
@@ -25,7 +26,7 @@ def summary(setup: Setup, case: Case, history: History) -> dict[str, Any]:
         "title": setup.title,
         "stages": [_stage(history, end) for end in stage_ends(setup, history)],
         "maximum_C": _number(history.readings["maximum"][hottest] - ZERO_CELSIUS),
-        "maximum_depth_mm": _number(history.maximum_depth[hottest] * 1e3),
+        "maximum_depth_mm": _number(depth_of_maximum(history, hottest) * 1e3),
         "maximum_time_s": _number(history.time[hottest]),
         "specific_energy_kWh_per_t": _number(energy / 3600.0),
         "specific_energy_from": account,
@@ -59,6 +60,11 @@ def summary(setup: Setup, case: Case, history: History) -> dict[str, Any]:
     }
 
 
+def summary_text(setup: Setup, case: Case, history: History) -> str:
+    """The summary as JSON text."""
+    return json.dumps(summary(setup, case, history), indent=2, ensure_ascii=False, allow_nan=False) + "\n"
+
+
 def _stage(history: History, end: StageEnd) -> dict[str, Any]:
     i, record = end.last, end.record
     told: dict[str, Any] = {
@@ -74,7 +80,7 @@ def _stage(history: History, end: StageEnd) -> dict[str, Any]:
             told["spread_K"] = _number(series[i])
         else:
             told[f"{name}_C"] = _number(series[i] - ZERO_CELSIUS)
-    told["maximum_depth_mm"] = _number(history.maximum_depth[i] * 1e3)
+    told["maximum_depth_mm"] = _number(depth_of_maximum(history, i) * 1e3)
     return told
 
 

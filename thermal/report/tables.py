@@ -13,7 +13,7 @@ from thermal.report.text import bullets, columns, paragraph
 from thermal.results.balance import relative_residual
 from thermal.results.history import History
 from thermal.results.stages import limit_spans, stage_ends
-from thermal.results.verdict import LIMIT_WORDS, sentence, spans_in_words
+from thermal.results.verdict import LIMIT_WORDS, depth_of_maximum, sentence, spans_in_words
 from thermal.setup import Setup
 
 JOULES_PER_KWH = 3.6e6
@@ -26,8 +26,8 @@ LOSS_WORDS = {
 }
 REASON_WORDS = {"target": "target met", "time": "time is up"}
 NO_COIL = (
-    "No electrical answers: the case has no [coil] and [supply], so supply power, coil current, voltage, efficiency "
-    "and the energy drawn are not known."
+    "No electrical answers: the case has no [coil] with a [supply], so supply power, coil current, voltage, "
+    "efficiency and the energy drawn are not known."
 )
 
 
@@ -46,6 +46,7 @@ def result_text(setup: Setup, case: Case, history: History, folder: Path | None)
     if notes := remarks(setup, case, history):
         parts.append(_headed("Notes", bullets(notes)))
     parts.append(_headed("Cautions", bullets(cautions(setup, history))))
+    parts.append(f"Assumed: {len(setup.assumptions)} values; `thermal check` and summary.json list them.")
     if folder is not None:
         parts.append(paragraph(f"Files: {folder}"))
     return "\n\n".join(parts) + "\n"
@@ -65,7 +66,7 @@ def stage_table(setup: Setup, history: History) -> str:
             rows.append(["spread (surface - core), K", *(f"{round(float(series[i])):+d}" for i in moments)])
         else:
             rows.append([f"{name}, °C", *(str(round(float(series[i]) - ZERO_CELSIUS)) for i in moments)])
-    depths = [f"{history.maximum_depth[i] * 1e3:.1f}" for i in moments]
+    depths = [f"{depth_of_maximum(history, i) * 1e3:.1f}" for i in moments]
     rows.append(["depth of the maximum, mm", *depths])
     return columns(rows)
 
@@ -94,9 +95,7 @@ def energy_table(setup: Setup, history: History) -> str:
     add("stored as heat when the run ends", spent["stored"])
     told = [columns(rows)]
     if setup.has_coil and setup.share < 1.0:
-        told.append(
-            bullets([f"One of a row in the coil: {100.0 * setup.share:.1f} % of all coil and supply figures."])
-        )
+        told.append(bullets([f"One of a row in the coil: {100.0 * setup.share:.1f} % of all coil and supply figures."]))
     if not setup.has_coil:
         told.append(bullets([NO_COIL]))
     told.append(bullets([f"The accounts close within {relative_residual(history.energy):.0e} of the energy moved."]))

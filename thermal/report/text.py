@@ -14,9 +14,7 @@ def paragraph(text: str) -> str:
 
 def bullets(lines: Sequence[str]) -> str:
     """Texts as a list, each wrapped to the width."""
-    return "\n".join(
-        textwrap.fill(line, WIDTH, initial_indent="  - ", subsequent_indent="    ") for line in lines
-    )
+    return "\n".join(textwrap.fill(line, WIDTH, initial_indent="  - ", subsequent_indent="    ") for line in lines)
 
 
 def columns(rows: Sequence[Sequence[str]], most_first: int = 44) -> str:
@@ -39,9 +37,7 @@ def columns(rows: Sequence[Sequence[str]], most_first: int = 44) -> str:
     return "\n\n".join(_block(rows, labels, first, block, widths) for block in blocks)
 
 
-def _block(
-    rows: Sequence[Sequence[str]], labels: list[str], first: int, block: list[int], widths: list[int]
-) -> str:
+def _block(rows: Sequence[Sequence[str]], labels: list[str], first: int, block: list[int], widths: list[int]) -> str:
     lines = []
     for label, row in zip(labels, rows, strict=True):
         cells = "".join(row[column].rjust(widths[column - 1]) for column in block)

@@ -1,0 +1,1 @@
+"""Words of the command line; nothing heavy is imported before a command runs."""

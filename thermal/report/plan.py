@@ -1,0 +1,138 @@
+"""What a case will be computed with: skin depths, expected field, mesh and everything assumed."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from thermal.case import Case
+from thermal.case.schema import Plate, Tube
+from thermal.control import FixedDrive, HoldTemperature
+from thermal.eddy.exact import skin_depth
+from thermal.interfaces import Demand, EddyField, OperatingPoint
+from thermal.report.text import bullets, columns
+from thermal.report.words import piece_in_words
+from thermal.results.verdict import LIMIT_WORDS, celsius
+from thermal.setup import Setup
+
+THIN = {"diameter": 3.5, "thickness": 3.0}
+"""Section over skin depth below which a hot section lets the field through (common practice)."""
+
+
+@dataclass(frozen=True)
+class Condition:
+    """The uniform workpiece at one temperature under the first drive of the schedule.
+
+    name ; T : [K] ; skin_depth : [m] at the surface ; field, point.
+    """
+
+    name: str
+    T: float
+    skin_depth: float
+    field: EddyField
+    point: OperatingPoint
+
+
+def conditions(setup: Setup) -> tuple[Condition, ...]:
+    """Cold and hot: at the start, and at the highest temperature asked for; none without a heat stage.
+
+    Raises
+    ------
+    NoConvergence : no operating point.
+    """
+    drives = [stage.control.fixed for stage in setup.stages if isinstance(stage.control, FixedDrive)]
+    demand = next((drive for drive in drives if drive.kind != "off"), None)
+    if demand is None:
+        return ()
+    cold = _condition(setup, demand, "cold", setup.T_initial)
+    hot = _highest_asked(setup)
+    return (cold,) if hot is None else (cold, _condition(setup, demand, "hot", hot))
+
+
+def plan_text(setup: Setup, case: Case) -> str:
+    """The plan of a run as plain text."""
+    parts = [f"{setup.title}\n{piece_in_words(setup, case)}\nThe case is valid."]
+    found = conditions(setup)
+    if found:
+        heading = "Workpiece in the field, at one temperature throughout, under the first drive"
+        parts.append(f"{heading}\n{_condition_table(setup, case, found)}")
+    parts.append(f"Mesh\n{_mesh_table(setup, found)}")
+    notes = [*setup.notes, *_thin(case, found)]
+    if notes:
+        parts.append(f"Notes\n{bullets(notes)}")
+    parts.append(f"Assumed\n{bullets(setup.assumptions)}")
+    return "\n\n".join(parts) + "\n"
+
+
+def _condition(setup: Setup, demand: Demand, name: str, T: float) -> Condition:
+    everywhere = np.full(setup.section.mesh.volume.size, T)
+    point, field = setup.supply.operate(setup.source.at(everywhere), demand, None)
+    resistivity = setup.material.resistivity(everywhere[-1:])
+    depth = float(skin_depth(resistivity, point.frequency, field.mu_r[-1:])[0])
+    return Condition(name, T, depth, field, point)
+
+
+def _highest_asked(setup: Setup) -> float | None:
+    asked = [
+        T
+        for stage in setup.stages
+        if stage.stop is not None and not stage.stop.falling
+        for T in stage.stop.temperatures.values()
+    ]
+    asked += [stage.control.set_point for stage in setup.stages if isinstance(stage.control, HoldTemperature)]
+    return max(asked, default=None)
+
+
+def _section(case: Case) -> tuple[str, float]:
+    """Name and size [m] of the section that is compared with the skin depth."""
+    match case.workpiece:
+        case Plate():
+            return "thickness", case.workpiece.thickness
+        case Tube():
+            return "wall", case.workpiece.wall
+        case _:
+            return "diameter", case.workpiece.diameter
+
+
+def _condition_table(setup: Setup, case: Case, found: tuple[Condition, ...]) -> str:
+    name, size = _section(case)
+    rows = [
+        ["", *(f"{each.name}, {celsius(each.T)}" for each in found)],
+        ["relative permeability at the surface", *(f"{each.field.mu_r[-1]:.3g}" for each in found)],
+        ["skin depth, mm", *(f"{each.skin_depth * 1e3:.3g}" for each in found)],
+        [f"{name} / skin depth", *(f"{size / each.skin_depth:.3g}" for each in found)],
+        ["field at the surface, kA/m rms", *(f"{each.field.H_surface_rms / 1e3:.3g}" for each in found)],
+        ["absorbed power, kW", *(f"{each.field.power / 1e3:.3g}" for each in found)],
+    ]
+    if setup.has_coil:
+        points = [each.point for each in found]
+        rows += [
+            ["supply power, kW", *(f"{point.supply_power / 1e3:.3g}" for point in points)],
+            ["coil current, A rms", *(f"{point.coil_current_rms:.4g}" for point in points)],
+            ["coil voltage, V rms", *(f"{point.coil_voltage_rms:.4g}" for point in points)],
+            ["power factor at the coil terminals", *(f"{point.power_factor:.2g}" for point in points)],
+        ]
+    limits = [each.point.limit for each in found]
+    rows.append(["what bounds it", *("the drive" if limit is None else LIMIT_WORDS[limit] for limit in limits)])
+    return columns(rows)
+
+
+def _mesh_table(setup: Setup, found: tuple[Condition, ...]) -> str:
+    sizes = np.diff(setup.section.mesh.edges)
+    rows = [
+        ["cells across the section", str(sizes.size)],
+        ["first cell under the surface, mm", f"{sizes[-1] * 1e3:.3g}"],
+        ["largest cell, mm", f"{sizes.max() * 1e3:.3g}"],
+    ]
+    if found:
+        rows.append(["skin depth, cold / first cell", f"{found[0].skin_depth / sizes[-1]:.2g}"])
+    return columns(rows)
+
+
+def _thin(case: Case, found: tuple[Condition, ...]) -> list[str]:
+    name, size = _section(case)
+    return [
+        f"Hot, the {name} is {size / each.skin_depth:.2g} skin depths: below about {THIN[name]:.2g} the field passes "
+        "through and heats little for its current (common practice); a higher frequency couples better."
+        for each in found
+        if each.name == "hot" and name in THIN and size / each.skin_depth < THIN[name]
+    ]
