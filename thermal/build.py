@@ -172,6 +172,7 @@ def _supply(case: Case, frequency: float, coil: Coil | None, assumptions: list[s
     resistivity = copper_resistivity(case.coil.temperature)
     depth = copper_depth(resistivity, frequency)
     if case.coil.wall is None:
+        assumptions[:] = [line for line in assumptions if not line.startswith("coil.wall")]
         assumptions.append(
             f"coil.wall = {coil.wall * 1e3:.3g} mm (1.5 skin depths in the copper up to the next 0.5 mm, "
             "1 mm to a quarter of the tube; common practice)"

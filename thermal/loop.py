@@ -7,6 +7,8 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
+from thermal.build import build
+from thermal.case import Case
 from thermal.control import HoldTemperature
 from thermal.interfaces import Array, EddyField, OperatingPoint
 from thermal.results.balance import demand_closure
@@ -212,6 +214,16 @@ class _Watch:
     def record(self, start: float, end: float, reason: str, met: bool) -> StageRecord:
         """The stage as it happened."""
         return StageRecord(self.stage.kind, start, end, reason, met, self.limits)
+
+
+def run_case(case: Case) -> History:
+    """Run a case: run(build(case)).
+
+    Raises
+    ------
+    CaseError, MaterialError, NoConvergence, BalanceError : see build and run.
+    """
+    return run(build(case))
 
 
 def run(setup: Setup, on_state: Callable[[State], None] | None = None) -> History:
