@@ -71,6 +71,7 @@ class Clock:
     """
 
     needs_readings: bool = False
+    gain: tuple[str, float] = ("surface", 0.0)
 
     def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
         return Demand("surface_field", memory)
@@ -110,9 +111,9 @@ def radiation(emissivity: float, T_around: float) -> FluxLaw:
 
 
 def by_hand(name: str, value: float) -> Property:
-    """A property of one constant value."""
+    """A property of one constant value from 200 to 3000 K."""
     made_up = Source("test", "made up", "assumed")
-    return Property(name, np.array([293.15]), np.array([value]), "linear", "hold", 0.0, "SI", made_up)
+    return Property(name, np.array([200.0, 3000.0]), np.full(2, value), "linear", "hold", 0.0, "SI", made_up)
 
 
 def plain_material(density: float, specific_heat: Property, conductivity: Property) -> Material:

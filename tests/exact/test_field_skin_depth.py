@@ -271,4 +271,4 @@ CARBON_STEEL = [
 
 @pytest.mark.parametrize(("rho", "mu_r", "depth"), CARBON_STEEL)
 def test_carbon_steel_on_the_way_up(rho, mu_r, depth):
-    assert_allclose(100.0 * skin_depth(rho * 1e-8, 1e3, mu_r), depth, rtol=4e-4)
+    assert_allclose(100.0 * skin_depth(rho * 1e-8, 1e3, mu_r), depth, atol=5.1e-5)

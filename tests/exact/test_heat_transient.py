@@ -7,7 +7,6 @@ H. S. Carslaw, J. C. Jaeger, Conduction of Heat in Solids, 2nd ed. 1959 (C&J); c
 import numpy as np
 import pytest
 from tools import (
-    STEEL_LIKE,
     Problem,
     PrescribedSource,
     ZERO,
@@ -115,7 +114,7 @@ def test_th_05_skin_source_in_a_half_space(time: float, rise: float) -> None:
     assert last_of(history, "surface") - 293.15 == pytest.approx(rise, rel=2e-3)
 
 
-@pytest.mark.parametrize("time", [60.0, 240.0])
+@pytest.mark.parametrize("time", [10.0, 60.0])
 def test_th_10_neumann_melting_front(time: float) -> None:
     # TH-10, C&J 11.2, Stefan problem: lambda e^{l^2} erf l = Ste/sqrt(pi). k 200, 2500 kg/m3, 1000 J/(kg K), latent
     # heat 3.9e5 J/kg, wall 100 K below the melting point, melt at it: lambda for Ste 100/390. After 10 s the front is

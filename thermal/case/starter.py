@@ -37,8 +37,8 @@ temperature = "20 °C"         # gas = "air", speed = "0 m/s"; or a constant h =
 [[schedule]]
 stage = "heat"
 # drive: or absorbed_power | coil_current | coil_voltage | surface_field
-drive = { supply_power = "60 kW" }
-until = { core = "1150 °C", spread = "80 K" }   # all must hold; spread is surface minus core, without sign
+drive = { supply_power = "25 kW" }
+until = { core = "1150 °C", spread = "100 K" }  # all must hold; spread is surface minus core, without sign
 longest = "300 s"
 
 [[schedule]]

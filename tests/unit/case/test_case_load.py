@@ -54,7 +54,7 @@ def test_values_are_si() -> None:
     assert case.supply is not None and case.supply.max_current == pytest.approx(3000.0)
     heat, transfer = case.schedule
     assert heat.stage == "heat"
-    assert (heat.drive.kind, heat.drive.value) == ("supply_power", pytest.approx(60e3))
+    assert (heat.drive.kind, heat.drive.value) == ("supply_power", pytest.approx(25e3))
     assert heat.until is not None
     assert heat.until.targets == pytest.approx({"core": 1423.15, "spread": 80.0})
     assert (transfer.stage, transfer.duration) == ("transfer", pytest.approx(6.0))
