@@ -36,6 +36,14 @@ COPPER_EMISSIVITY = 0.6
 
 WALL_FACTOR_WARNING = 1.2
 
+PERMEABILITY = {
+    "constant": "one value at every field and temperature",
+    "normal": "from a normal B-H curve, turned into the effective value for a sinusoidal field",
+    "froehlich-kennelly": "from the Froehlich-Kennelly law, turned into the effective value for a sinusoidal field",
+    "effective": "from a table already given as effective, used as it is",
+}
+"""How the permeability data of a material are used, for the reader of a result."""
+
 _SourceOn = Callable[[Mesh], SectionSource]
 
 
@@ -50,7 +58,7 @@ def build(case: Case) -> Setup:
     material = workpiece_material(case)
     frequency = frequency_of(case)
     coil = coil_of(case, frequency)
-    assumptions = list(case.defaults_used)
+    assumptions = [*case.defaults_used, f"permeability of {material.key}: {PERMEABILITY[material.magnetics.definition]}"]
     notes: list[str] = []
 
     share, heated_share, filled = _lengths(case, coil)
