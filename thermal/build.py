@@ -58,7 +58,10 @@ def build(case: Case) -> Setup:
     material = workpiece_material(case)
     frequency = frequency_of(case)
     coil = coil_of(case, frequency)
-    assumptions = [*case.defaults_used, f"permeability of {material.key}: {PERMEABILITY[material.magnetics.definition]}"]
+    assumptions = [
+        *case.defaults_used,
+        f"permeability of {material.key}: {PERMEABILITY[material.magnetics.definition]}",
+    ]
     notes: list[str] = []
 
     share, heated_share, filled = _lengths(case, coil)

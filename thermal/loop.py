@@ -3,7 +3,7 @@
 import math
 import time
 from collections.abc import Callable, Iterator
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 import numpy as np
 
@@ -13,36 +13,13 @@ from thermal.control import HoldTemperature
 from thermal.interfaces import Array, EddyField, OperatingPoint
 from thermal.results.balance import demand_closure
 from thermal.results.history import History, StageRecord, Status
-from thermal.results.recorder import Recorder
+from thermal.results.recorder import Recorder, State
 from thermal.schedule import Stage
 from thermal.setup import Setup
 from thermal.stepper import LANDING, Hottest, Moment, Stepper, account_names
 
 SETTLED = 1e-3
 """Net heat below this share of what is absorbed counts as settled."""
-
-
-@dataclass(frozen=True, slots=True)
-class State:
-    """The run after an accepted step, or at the start of a stage (step 0).
-
-    time, step : [s] ; H : (n,) [J/m3] ; extended : (n + 2,) [K] core, cells, surface ; readings : name -> [K] ;
-    losses : account -> [W] ; energy : account -> [J] since the start of the run.
-    """
-
-    time: float
-    stage: int
-    step: float
-    H: Array
-    extended: Array
-    readings: dict[str, float]
-    field: EddyField
-    point: OperatingPoint
-    losses: dict[str, float]
-    energy: dict[str, float]
-    record: StageRecord | None = None
-    field_solves: int = 0
-    rejected: int = 0
 
 
 def march(setup: Setup) -> Iterator[State]:
@@ -262,8 +239,6 @@ def run(setup: Setup, on_state: Callable[[State], None] | None = None) -> Histor
     history = recorder.history(
         tuple(records),
         status,
-        sentence="",
-        notes=setup.notes,
         field_solves=solves + per_stage,
         rejected=rejected,
         wall_s=time.perf_counter() - began,

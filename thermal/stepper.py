@@ -199,18 +199,8 @@ class Stepper:
 
     def readings(self, extended: Array) -> dict[str, float]:
         """Every reading [K] by name."""
-        sampler = self.setup.sampler
-        surface, core = float(extended[-1]), float(extended[0])
-        found = {
-            "surface": surface,
-            "core": core,
-            "mean": sampler.mean(extended[1:-1]),
-            "maximum": float(extended.max()),
-            "spread": surface - core,
-        }
-        for name, depth in self.setup.depths.items():
-            found[name] = sampler.at_depth(extended, depth)
-        return found
+        found = self.setup.sampler.readings(extended, self.setup.depths)
+        return {name: float(value) for name, value in found.items()}
 
     def try_step(self, start: Moment, step: float) -> tuple[Step, Moment]:
         """One step of a given length from a moment; the embedded error is not judged."""

@@ -160,7 +160,10 @@ class DirectDrive:
         Raises
         ------
         NoConvergence : no surface field does it.
+        ValueError : the demand needs a coil.
         """
+        if demand.kind not in ("absorbed_power", "surface_field"):
+            raise ValueError(f"without a coil there is no {demand.kind}")
 
         def try_at(H: float, field: EddyField | None) -> Trial:
             found = field_of(H, self.frequency, field)

@@ -5,7 +5,7 @@ import time
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from thermal.loop import State
+    from thermal.results.recorder import State
 
 EVERY = 0.1
 """Seconds between two rewrites."""

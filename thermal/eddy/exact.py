@@ -1,7 +1,7 @@
 """Closed forms for uniform properties: skin depth, half-space, plate, cylinder, tube, round wire.
 
 Fields are phasors exp(+j w t). H is the peak amplitude in this module only where a name says ``_peak``; every
-power function takes rms values. P. J. Davies 1990, Conduction and induction heating, ch. 5-9; S. Lupi 2017,
+power function takes rms values. E. J. Davies 1990, Conduction and induction heating, ch. 5-9; S. Lupi 2017,
 Fundamentals of electroheat, ch. 6 (both from memory).
 """
 
@@ -35,7 +35,7 @@ def half_space_power(resistivity: float, frequency: float, mu_r: float, H_rms: f
 def plate_factor(thickness_over_delta: npt.ArrayLike) -> Array:
     """F in P'' (both faces together) = 2 H_rms^2 rho/delta F for equal H on both faces."""
     nu = np.asarray(thickness_over_delta, dtype=float)
-    return np.asarray((np.sinh(nu) - np.sin(nu)) / (np.cosh(nu) + np.cos(nu)))
+    return np.asarray(((1.0 + 1.0j) * np.tanh((1.0 + 1.0j) * nu / 2.0)).real)
 
 
 def plate_impedance(resistivity: float, frequency: float, mu_r: float, thickness: float) -> complex:
@@ -93,7 +93,7 @@ def _annulus(
     # Bessel functions scaled by exp(-gamma (outer - r)) and exp(-gamma (r - inner)): no overflow, one common base.
     def i_(order: int, x: npt.ArrayLike) -> ComplexArray:
         z = gamma * np.asarray(x)
-        return np.asarray(ive(order, z) * np.exp(1j * 0.0 + (z.real - (gamma * outer).real)))
+        return np.asarray(ive(order, z) * np.exp(z.real - (gamma * outer).real))
 
     def k_(order: int, x: npt.ArrayLike) -> ComplexArray:
         z = gamma * np.asarray(x)
@@ -130,5 +130,5 @@ def surface_core_factor(radius_over_delta: npt.ArrayLike) -> Array:
     T - T_s = rho (|H_s|^2 - |H|^2)/(2 k) at rms H with the mean rise removed.
     """
     x = np.asarray(radius_over_delta, dtype=float)
-    core = 1.0 / np.abs(ive(0, (1.0 + 1.0j) * x) * np.exp(x)) ** 2
+    core = np.exp(-2.0 * x) / np.abs(ive(0, (1.0 + 1.0j) * x)) ** 2
     return np.asarray(1.0 - (1.0 - core) / (x * cylinder_factor(x).real))

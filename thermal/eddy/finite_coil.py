@@ -82,6 +82,8 @@ class SectionSource:
         The excitation is the coil current, or without a coil the surface field; rms.
         """
         resistivity = self.resistivity(T)
+        if not np.isfinite(resistivity).all():
+            raise NoConvergence("the resistivity of the workpiece is not a number")
         factor = self.magnetics.factor(T)
         # A section without permeability left responds in proportion: one solve serves every excitation.
         proportional = self.magnetics.linear or not factor.any()

@@ -151,11 +151,13 @@ class RadialSolver:
             if magnetics.linear:
                 return profile, H_surface, solves
             size = np.abs(profile.H)
-            middle = size[:-1] + size[1:]
-            following = 1.0 + factor * magnetics.effective_susceptibility((H_surface / math.sqrt(2.0)) * middle)
+            # Mean square over a cell of an amplitude that is straight between its faces.
+            square = (size[:-1] * size[:-1] + size[:-1] * size[1:] + size[1:] * size[1:]) / 3.0
+            H_peak = H_surface * np.sqrt(2.0 * square)
+            following = 1.0 + factor * magnetics.effective_susceptibility(H_peak)
             off = following / mu_r - 1.0
             # What a relative change of mu_r in a cell does to the surface impedance, to first order: j w mu H^2 dV.
-            weight = flux * mu_r * (0.25 * middle * middle)
+            weight = flux * mu_r * square
             if float(weight @ np.abs(off)) < IMPEDANCE_TOLERANCE * abs(profile.impedance):
                 return profile, H_surface, solves
             mu_r = following

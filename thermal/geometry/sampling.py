@@ -38,10 +38,26 @@ class Sampler:
             core = T_bore if T_bore is not None else T[0]
         return np.concatenate([[core], T, [T_outer]])
 
-    def at_depth(self, extended: Array, depth: float) -> float:
-        """Temperature [K] at a depth [m] under the outer surface, linear between the nodes."""
-        return float(np.interp(self.nodes[-1] - depth, self.nodes, extended))
+    def at_depth(self, extended: Array, depth: float) -> Array:
+        """Temperature (...,) [K] at a depth [m] under the outer surface, linear between the nodes (..., n + 2)."""
+        place = self.nodes[-1] - depth
+        left = min(max(int(np.searchsorted(self.nodes, place)) - 1, 0), self.nodes.size - 2)
+        share = (place - self.nodes[left]) / (self.nodes[left + 1] - self.nodes[left])
+        return np.asarray((1.0 - share) * extended[..., left] + share * extended[..., left + 1])
 
-    def mean(self, T: Array) -> float:
-        """Volume mean [K]."""
-        return float(self.volume_share @ T)
+    def readings(self, extended: Array, depths: dict[str, float]) -> dict[str, Array]:
+        """Every reading (...,) [K] by name, from temperatures (..., n + 2) at the nodes and named depths [m].
+
+        mean is over the volume, maximum over the whole section, spread is surface minus core.
+        """
+        surface, core = extended[..., -1], extended[..., 0]
+        found = {
+            "surface": surface,
+            "core": core,
+            "mean": extended[..., 1:-1] @ self.volume_share,
+            "maximum": extended.max(axis=-1),
+            "spread": surface - core,
+        }
+        for name, depth in depths.items():
+            found[name] = self.at_depth(extended, depth)
+        return found

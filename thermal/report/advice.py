@@ -36,7 +36,7 @@ def expectation(case: Case) -> tuple[str, ...]:
 def remarks(setup: Setup, case: Case, history: History) -> tuple[str, ...]:
     """Notes of the setup, data held beyond their range, holds that were not kept and moments not covered."""
     return (
-        *history.notes,
+        *setup.notes,
         *_beyond_data(setup, case, history),
         *_not_held(setup, history),
         *(

@@ -1,4 +1,4 @@
-"""Do the energy accounts close?"""
+"""Whether the energy accounts of a run close."""
 
 import numpy as np
 import numpy.typing as npt

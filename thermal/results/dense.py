@@ -82,7 +82,7 @@ def sample(setup: Setup, history: History, stage: npt.ArrayLike, time: npt.Array
             for cells, (inner, outer) in zip(T, offset, strict=True)
         ]
     )
-    return Sampled(times, stages, extended, _readings(setup, extended), series, energy)
+    return Sampled(times, stages, extended, setup.sampler.readings(extended, setup.depths), series, energy)
 
 
 def cubic(x: Array, y: Array, at: Array) -> Array:
@@ -119,17 +119,3 @@ def _three_point_slopes(x: Array, y: Array) -> Array:
     first = 2.0 * chord[:1] - inner[:1]
     last = 2.0 * chord[-1:] - inner[-1:]
     return np.concatenate([first, inner, last])
-
-
-def _readings(setup: Setup, extended: Array) -> dict[str, Array]:
-    surface, core = extended[:, -1], extended[:, 0]
-    found = {
-        "surface": surface,
-        "core": core,
-        "mean": extended[:, 1:-1] @ setup.sampler.volume_share,
-        "maximum": extended.max(axis=1),
-        "spread": surface - core,
-    }
-    for name, depth in setup.depths.items():
-        found[name] = np.array([setup.sampler.at_depth(row, depth) for row in extended])
-    return found

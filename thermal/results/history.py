@@ -8,10 +8,9 @@ import numpy.typing as npt
 
 Array = npt.NDArray[np.float64]
 
-Status = Literal["finished", "target", "limit", "cannot_reach", "failed", "interrupted"]
+Status = Literal["finished", "target", "limit", "cannot_reach", "interrupted"]
 """finished: all stages done, no target asked; target: every target met; limit: done, but the solidus was passed or
-the run had to stop at the liquidus; cannot_reach: a target was not met; failed: no convergence or accounts do
-not close; interrupted: stopped by the user."""
+the run had to stop at the liquidus; cannot_reach: a target was not met; interrupted: stopped by the user. (A run that finds no solution raises.)"""
 
 
 @dataclass(frozen=True)
@@ -76,8 +75,6 @@ class History:
     energy: dict[str, Array]
     stages: tuple[StageRecord, ...]
     status: Status
-    sentence: str
-    notes: tuple[str, ...]
     field_solves: int
     steps: int
     rejected: int

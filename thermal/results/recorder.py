@@ -1,7 +1,6 @@
 """Collects the states of a march into a History."""
 
 from dataclasses import dataclass, field
-from typing import Protocol
 
 import numpy as np
 
@@ -9,29 +8,27 @@ from thermal.interfaces import Array, EddyField, OperatingPoint
 from thermal.results.history import History, StageRecord, Status
 
 
-class State(Protocol):
-    """What a march yields after every accepted step, and at the start of every stage."""
+@dataclass(frozen=True, slots=True)
+class State:
+    """The run after an accepted step, or at the start of a stage (step 0).
 
-    @property
-    def time(self) -> float: ...
-    @property
-    def stage(self) -> int: ...
-    @property
-    def step(self) -> float: ...
-    @property
-    def H(self) -> Array: ...
-    @property
-    def extended(self) -> Array: ...
-    @property
-    def readings(self) -> dict[str, float]: ...
-    @property
-    def field(self) -> EddyField: ...
-    @property
-    def point(self) -> OperatingPoint: ...
-    @property
-    def losses(self) -> dict[str, float]: ...
-    @property
-    def energy(self) -> dict[str, float]: ...
+    time, step : [s] ; H : (n,) [J/m3] ; extended : (n + 2,) [K] core, cells, surface ; readings : name -> [K] ;
+    losses : account -> [W] ; energy : account -> [J] since the start of the run.
+    """
+
+    time: float
+    stage: int
+    step: float
+    H: Array
+    extended: Array
+    readings: dict[str, float]
+    field: EddyField
+    point: OperatingPoint
+    losses: dict[str, float]
+    energy: dict[str, float]
+    record: StageRecord | None = None
+    field_solves: int = 0
+    rejected: int = 0
 
 
 @dataclass
@@ -53,8 +50,6 @@ class Recorder:
         self,
         stages: tuple[StageRecord, ...],
         status: Status,
-        sentence: str,
-        notes: tuple[str, ...],
         field_solves: int,
         rejected: int,
         wall_s: float,
@@ -95,8 +90,6 @@ class Recorder:
             energy={name: np.array([s.energy[name] for s in states]) for name in states[0].energy},
             stages=stages,
             status=status,
-            sentence=sentence,
-            notes=notes,
             field_solves=field_solves,
             steps=sum(1 for s in states if s.step > 0.0),
             rejected=rejected,

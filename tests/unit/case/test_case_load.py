@@ -56,7 +56,7 @@ def test_values_are_si() -> None:
     assert heat.stage == "heat"
     assert (heat.drive.kind, heat.drive.value) == ("supply_power", pytest.approx(25e3))
     assert heat.until is not None
-    assert heat.until.targets == pytest.approx({"core": 1423.15, "spread": 80.0})
+    assert heat.until.targets == pytest.approx({"core": 1423.15, "spread": 100.0})
     assert (transfer.stage, transfer.duration) == ("transfer", pytest.approx(6.0))
     assert case.readings[0].depth == pytest.approx(0.005)
 
