@@ -50,12 +50,11 @@ def _march_stage(setup: Setup, number: int, stage: Stage, book: "_Book") -> Iter
 
     def distance(at: Moment) -> float:
         """To the targets or to the end of the material, whichever comes first [K]."""
-        readings = stepper.readings(at.extended)
-        room = setup.T_end - readings["maximum"]
-        return min(room, stage.stop.distance(readings)) if stage.stop else room
+        room = setup.T_end - at.readings["maximum"]
+        return min(room, stage.stop.distance(at.readings)) if stage.stop else room
 
     now = stepper.moment(book.H, np.zeros(1), book.recent)
-    if stage.stop and stage.stop.distance(stepper.readings(now.extended)) <= 0.0:
+    if stage.stop and stage.stop.distance(now.readings) <= 0.0:
         yield book.state(number, stepper, now, 0.0, watch.record(begun, begun, "already there", met=True))
         return
     yield book.state(number, stepper, now, 0.0, None)
@@ -71,9 +70,8 @@ def _march_stage(setup: Setup, number: int, stage: Stage, book: "_Book") -> Iter
         timed_out = not landed and length >= left
         book.accept(taken.gained, end, end_time if timed_out else book.clock + length)
         watch.see(book.clock - length, book.clock, end.point.limit)
-        readings = stepper.readings(end.extended)
         if landed:
-            if stage.stop is not None and stage.stop.distance(readings) <= LANDING:
+            if stage.stop is not None and stage.stop.distance(end.readings) <= LANDING:
                 record = watch.record(begun, book.clock, "target", met=True)
             else:
                 record = watch.record(begun, book.clock, "too hot", met=stage.stop is None)
@@ -137,7 +135,7 @@ class _Book:
             step=step,
             H=at.H,
             extended=at.extended,
-            readings=stepper.readings(at.extended),
+            readings=at.readings,
             field=at.field,
             point=at.point,
             losses=losses,

@@ -50,12 +50,13 @@ class Hottest:
 class Moment:
     """The workpiece at one instant, with everything that follows from its enthalpy.
 
-    H : (n,) ; extended : (n + 2,) [K] core, cells, surface ; memory : of the control [W] ; faces : face -> state ;
-    field, point ; rates ; matrix : of a step that starts here ; trend : (n,) mean dH/dt of the step that led here.
+    H : (n,) ; extended : (n + 2,) [K] core, cells, surface ; readings : name -> [K] ; memory : of the control [W] ;
+    faces : face -> state ; field, point ; rates ; matrix : of a step that starts here ; trend : (n,) mean dH/dt of the step that led here.
     """
 
     H: Array
     extended: Array
+    readings: dict[str, float]
     memory: Array
     faces: dict[str, FaceState]
     field: EddyField
@@ -108,14 +109,15 @@ class Stepper:
         """Everything that follows from H (n,) [J/m3] and the memory of the control."""
         here = self._conduct(H, with_slopes=True)
         extended = self._extended(here)
-        rates, point, field = self._drive(here, self.readings(extended), memory, guess)
+        readings = self._readings(extended)
+        rates, point, field = self._drive(here, readings, memory, guess)
         assert here.dT_dH is not None
         clipped = point is self._idle_point or point.limit is not None
         feedback = None if clipped else self._feedback(here.dT_dH, field, rates.accounts)
         matrix = Matrix(here.conductance, here.dT_dH, tuple(here.slopes), feedback)
         if trend is None:
             trend = rates.heat_flow / self._volume
-        return Moment(H, extended, memory, here.faces, field, point, rates, matrix, trend)
+        return Moment(H, extended, readings, memory, here.faces, field, point, rates, matrix, trend)
 
     def _conduct(self, H: Array, with_slopes: bool) -> _Conduction:
         section = self.setup.section
@@ -197,7 +199,7 @@ class Stepper:
         per_watt[:electrical] = accounts[:electrical] / field.power
         return Feedback(self._volume * field.heat / field.power, pull, per_watt)
 
-    def readings(self, extended: Array) -> dict[str, float]:
+    def _readings(self, extended: Array) -> dict[str, float]:
         """Every reading [K] by name."""
         found = self.setup.sampler.readings(extended, self.setup.depths)
         return {name: float(value) for name, value in found.items()}
@@ -210,7 +212,7 @@ class Stepper:
             nonlocal recent
             here = self._conduct(H, with_slopes=False)
             wanted = self.stage.control.needs_readings
-            readings = self.readings(self._extended(here)) if wanted else {}
+            readings = self._readings(self._extended(here)) if wanted else {}
             found, point, field = self._drive(here, readings, memory, recent)
             if field.power > 0.0:
                 recent = (point, field)
