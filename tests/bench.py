@@ -1,7 +1,7 @@
 """Time, steps and error of the reference problems, beside what one would write with SciPy; run it as a script.
 
-Error: largest deviation of surface and core from a run at 1 mK over the whole history. Times are of this machine: read the
-ratios.
+Error: largest deviation of surface and core from a run at 1 mK over the whole history. Times are of this machine: read
+the ratios.
 """
 
 import time

@@ -13,7 +13,7 @@ import math
 from dataclasses import dataclass
 
 import numpy as np
-from tools import ZERO, Problem, PrescribedSource, convection, heating, plain_material, radiation
+from tools import ZERO, PrescribedSource, Problem, convection, heating, plain_material, radiation
 
 from materials.property import Property
 from materials.source import Source
@@ -22,13 +22,13 @@ from thermal.control import FixedDrive
 from thermal.eddy.radial import RadialSolver
 from thermal.geometry.mesh import Mesh
 from thermal.geometry.shapes import cylinder
-from thermal.interfaces import Array, Demand, EddyField, FieldOf
+from thermal.interfaces import Array, BoundaryLoss, Demand, EddyField, FieldOf
 from thermal.schedule import Stop
 from thermal.setup import Setup
 
 RADIUS, LENGTH = 0.03, 0.1
 T_START = ZERO + 20.0
-LOSSES = {"outer": (radiation(0.8, T_START), convection(10.0, T_START))}
+LOSSES: dict[str, tuple[BoundaryLoss, ...]] = {"outer": (radiation(0.8, T_START), convection(10.0, T_START))}
 
 _STANDARD = Source("en-1993-1-2", "3.4.1.2 and 3.4.1.3", "recommended")
 STEEL = plain_material(

@@ -2,6 +2,7 @@
 
 from collections.abc import Callable
 from dataclasses import dataclass, field
+from typing import Protocol
 
 import numpy as np
 
@@ -23,9 +24,9 @@ from thermal.interfaces import (
     HeatSource,
     OperatingPoint,
     PropertyOf,
+    Real,
     Supply,
 )
-from thermal.loop import State
 from thermal.results.history import History
 from thermal.schedule import Stage, Stop
 from thermal.setup import Setup
@@ -80,34 +81,49 @@ class Clock:
         return 1.0
 
 
+class Law(Protocol):
+    """Flux [W/m2] out of the workpiece and its slope [W/(m2 K)] from the surface temperature [K]."""
+
+    def __call__(self, T: Real, /) -> tuple[Real, Real]: ...
+
+
 @dataclass(frozen=True)
 class FluxLaw:
-    """A loss by any law of the surface temperature (plays BoundaryLoss).
-
-    law : T (s,) [K] -> flux (s,) [W/m2], slope (s,) [W/(m2 K)].
-    """
+    """A loss by any law of the surface temperature (plays BoundaryLoss)."""
 
     name: str
-    law: Callable[[Array], tuple[Array, Array]]
+    law: Law
 
-    def flux(self, T_surface: Array, T_peak: Array) -> tuple[Array, Array]:
+    def flux(self, T_surface: Real, T_peak: Real) -> tuple[Real, Real]:
         return self.law(T_surface)
 
 
 def constant_flux(q: float) -> FluxLaw:
     """A flux q [W/m2] INTO the workpiece: a loss of the opposite sign."""
-    return FluxLaw("flux", lambda T: (np.full_like(T, -q), np.zeros_like(T)))
+
+    def law(T: Real) -> tuple[Real, Real]:
+        return 0.0 * T - q, 0.0 * T
+
+    return FluxLaw("flux", law)
 
 
 def convection(h: float, T_around: float) -> FluxLaw:
     """h [W/(m2 K)] to T_around [K]."""
-    return FluxLaw("convection", lambda T: (h * (T - T_around), np.full_like(T, h)))
+
+    def law(T: Real) -> tuple[Real, Real]:
+        return h * (T - T_around), 0.0 * T + h
+
+    return FluxLaw("convection", law)
 
 
 def radiation(emissivity: float, T_around: float) -> FluxLaw:
     """Grey radiation to large surroundings at T_around [K]; sigma of CODATA 2018."""
     s = emissivity * 5.670374419e-8
-    return FluxLaw("radiation", lambda T: (s * (T**4 - T_around**4), 4.0 * s * T**3))
+
+    def law(T: Real) -> tuple[Real, Real]:
+        return s * (T * T * T * T - T_around**4), 4.0 * s * (T * T * T)
+
+    return FluxLaw("radiation", law)
 
 
 def by_hand(name: str, value: float) -> Property:
@@ -220,16 +236,13 @@ def observed_order(sizes: list[float], errors: list[float]) -> float:
 
 
 def account_gap(energy: dict[str, Array]) -> float:
-    """|stored + lost - absorbed| over the largest of the three, over the whole history: the rule of the project
-    written down once more, for every moment instead of the last."""
+    """|stored + lost - absorbed| over the largest of the three, at every moment of the history."""
     lost = np.sum([series for name, series in energy.items() if name.startswith("loss: ")], axis=0)
     stored, absorbed = energy["stored"], energy["absorbed"]
     size = max(np.abs(stored).max(), np.abs(lost).max(), np.abs(absorbed).max())
     return float(np.abs(stored + lost - absorbed).max() / size)
 
 
-def last_of(states: list[State] | History, reading: str) -> float:
+def last_of(history: History, reading: str) -> float:
     """Value of a reading [K] at the end."""
-    if isinstance(states, History):
-        return float(states.readings[reading][-1])
-    return states[-1].readings[reading]
+    return float(history.readings[reading][-1])

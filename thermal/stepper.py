@@ -51,7 +51,8 @@ class Moment:
     """The workpiece at one instant, with everything that follows from its enthalpy.
 
     H : (n,) ; extended : (n + 2,) [K] core, cells, surface ; readings : name -> [K] ; memory : of the control [W] ;
-    faces : face -> state ; field, point ; rates ; matrix : of a step that starts here ; trend : (n,) mean dH/dt of the step that led here.
+    faces : face -> state ; field, point ; rates ; matrix : of a step that starts here ; trend : (n,) mean dH/dt of
+    the step that led here.
     """
 
     H: Array

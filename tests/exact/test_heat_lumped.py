@@ -55,9 +55,7 @@ def test_th_09_cooling_time(T_around: float, T_to: float, time: float) -> None:
 )
 def test_th_09_heating_time(q: float, T_to: float, time: float) -> None:
     # A flux q [W/m2] from 293.15 K against radiation to 293.15 K.
-    history = lumped(
-        left_alone(1e5, Stop({"surface": T_to})), 293.15, constant_flux(q), radiation(0.8, 293.15)
-    )
+    history = lumped(left_alone(1e5, Stop({"surface": T_to})), 293.15, constant_flux(q), radiation(0.8, 293.15))
     assert history.time[-1] == pytest.approx(time, rel=1e-4)
 
 
@@ -66,9 +64,7 @@ def test_th_09_heating_time(q: float, T_to: float, time: float) -> None:
     [(5e4, 0.0, 1026.3420314869254), (1e5, 0.0, 1219.516544807047), (1e5, 15.0, 1177.062676831502)],
 )
 def test_th_09_equilibrium(q: float, h: float, T_end: float) -> None:
-    history = lumped(
-        heating(1e5), 293.15, constant_flux(q), radiation(0.8, 293.15), convection(h, 293.15)
-    )
+    history = lumped(heating(1e5), 293.15, constant_flux(q), radiation(0.8, 293.15), convection(h, 293.15))
     assert last_of(history, "surface") == pytest.approx(T_end, rel=1e-6)
 
 

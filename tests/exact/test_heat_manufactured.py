@@ -8,11 +8,11 @@ confirms them by differences.
 
 import numpy as np
 import pytest
-from tools import Clock, FluxLaw, Problem, PrescribedSource, ZERO, heating, observed_order, uniform_edges
+from tools import ZERO, Clock, FluxLaw, PrescribedSource, Problem, heating, observed_order, uniform_edges
 
 from thermal.conduction.assemble import EnthalpyTable
 from thermal.geometry.shapes import cylinder
-from thermal.interfaces import Array
+from thermal.interfaces import Array, Real
 from thermal.setup import Setup
 from thermal.stepper import Hottest, Moment, Stepper
 
@@ -30,7 +30,7 @@ def shape(r: Array) -> tuple[Array, Array, Array]:
 
 def solution(r: Array, t: float) -> Array:
     """T [°C]."""
-    return A + B * np.exp(-t / TAU) * shape(r)[0]
+    return np.asarray(A + B * np.exp(-t / TAU) * shape(r)[0])
 
 
 def source(r: Array, t: float) -> Array:
@@ -38,15 +38,16 @@ def source(r: Array, t: float) -> Array:
     E = B * np.exp(-t / TAU)
     phi, slope, laplace = shape(r)
     T = A + E * phi
-    return -(C0 + C1 * T) * E * phi / TAU - (K0 + K1 * T) * E * laplace - K1 * (E * slope) ** 2
+    return np.asarray(-(C0 + C1 * T) * E * phi / TAU - (K0 + K1 * T) * E * laplace - K1 * (E * slope) ** 2)
 
 
-def loss(T_surface: Array) -> tuple[Array, Array]:
+def loss(T_surface: Real) -> tuple[Real, Real]:
     """-k dT/dr at r = R as a function of the surface temperature [K], and its slope."""
-    phi, slope, _ = shape(np.array([R]))
-    T = T_surface - ZERO
+    phi, slope, _ = (float(each[0]) for each in shape(np.array([R])))
     h = -slope / phi
-    return (K0 + K1 * T) * h * (T - A), h * (K0 + K1 * T + K1 * (T - A))
+    T = T_surface - ZERO
+    k = K0 + K1 * T
+    return h * k * (T - A), h * (k + K1 * (T - A))
 
 
 TIME = 20.0

@@ -9,8 +9,8 @@ from collections.abc import Callable
 import numpy as np
 import pytest
 from tools import (
-    Problem,
     PrescribedSource,
+    Problem,
     convection,
     heating,
     last_of,

@@ -7,9 +7,9 @@ H. S. Carslaw, J. C. Jaeger, Conduction of Heat in Solids, 2nd ed. 1959 (C&J); c
 import numpy as np
 import pytest
 from tools import (
-    Problem,
-    PrescribedSource,
     ZERO,
+    PrescribedSource,
+    Problem,
     by_hand,
     constant_flux,
     convection,

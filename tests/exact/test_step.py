@@ -12,10 +12,10 @@ from tools import observed_order
 
 from thermal.conduction.step import (
     ALPHA,
-    B,
     B_EMBEDDED,
     GAMMA,
     GAMMA_DIAGONAL,
+    B,
     Feedback,
     Matrix,
     Rates,
@@ -82,7 +82,7 @@ CELLS = 6
 RNG = np.random.default_rng(20250722)
 VOLUME = RNG.uniform(0.5, 2.0, CELLS)
 MIX = RNG.uniform(-1.0, 1.0, (CELLS, CELLS))
-SLOPES = ((1, np.array([CELLS - 1]), np.array([0.7])), (1, np.arange(CELLS), RNG.uniform(0.0, 0.5, CELLS)))
+SLOPES = ((1, -1, 0.7), (1, slice(None), RNG.uniform(0.0, 0.5, CELLS)))
 WRONG = Matrix(RNG.uniform(0.1, 2.0, CELLS - 1), RNG.uniform(0.1, 2.0, CELLS), SLOPES)
 CONTROLLED = Matrix(
     WRONG.conductance,
@@ -171,7 +171,7 @@ def test_conserves_with_any_matrix_and_nonlinear_losses(seed: int, controlled: b
     matrix = Matrix(
         rng.uniform(0.0, 50.0, n - 1),
         rng.uniform(0.0, 1e-6, n),
-        ((1, np.array([n - 1]), rng.uniform(0.0, 1e-5, 1)), (2, np.arange(n), rng.uniform(0.0, 1e-6, n))),
+        ((1, -1, float(rng.uniform(0.0, 1e-5))), (2, slice(None), rng.uniform(0.0, 1e-6, n))),
         feedback if controlled else None,
     )
 

@@ -28,14 +28,14 @@ T_CURIE = 1041.15
 def text_of(drive: str, frequency: str, tolerance: str) -> str:
     match drive:
         case "field":
-            return drive_case("cylinder", f'surface_field = "{FIELDS[frequency]}"', frequency, UNTIL, tolerance=tolerance)
+            return drive_case(
+                "cylinder", f'surface_field = "{FIELDS[frequency]}"', frequency, UNTIL, tolerance=tolerance
+            )
         case "power":
             return drive_case("cylinder", 'absorbed_power = "30 kW"', frequency, UNTIL, tolerance=tolerance)
         case _:
             heat = f'[[schedule]]\nstage = "heat"\ndrive = {{ supply_power = "50 kW" }}\n{UNTIL}'
-            return (
-                coil_case("cylinder", True, "none", frequency) + heat + f'[numerics]\ntolerance = "{tolerance}"\n'
-            )
+            return coil_case("cylinder", True, "none", frequency) + heat + f'[numerics]\ntolerance = "{tolerance}"\n'
 
 
 def setup_of(drive: str, frequency: str, tolerance: str, refinement: int) -> Setup:
@@ -58,7 +58,7 @@ tolerances = pytest.mark.parametrize("tolerance", ["1 K", pytest.param("0.1 K", 
 @tolerances
 def test_gets_through(drive: str, frequency: str, tolerance: str) -> None:
     # A failed step would have raised NoConvergence.
-    setup, history = heated(drive, frequency, tolerance)
+    _, history = heated(drive, frequency, tolerance)
     assert history.status == "target"
     assert history.readings["surface"][-1] == pytest.approx(1523.15, abs=1e-3)
     assert history.heat.min() >= 0.0

@@ -9,10 +9,9 @@ import pytest
 from cases_in_words import coil_case, drive_case
 from tools import account_gap
 
-from thermal import stepper
 from thermal.build import build
 from thermal.case import from_text
-from thermal.conduction.step import Matrix, Rates, Step
+from thermal.conduction.step import Matrix, Rates, Step, rosenbrock_step
 from thermal.errors import BalanceError
 from thermal.interfaces import Array
 from thermal.loop import run
@@ -109,9 +108,7 @@ def test_closes_at_any_tolerance(tolerance: str) -> None:
 
 def test_absorbed_energy_is_the_integral_of_the_power() -> None:
     # Closure alone would not notice an account of the wrong size on both sides.
-    setup = setup_of(
-        drive_case("cylinder", 'absorbed_power = "15 kW"', "3 kHz", 'duration = "4 s"')
-    )
+    setup = setup_of(drive_case("cylinder", 'absorbed_power = "15 kW"', "3 kHz", 'duration = "4 s"'))
     history = run(setup)
     assert history.energy["absorbed"][-1] == pytest.approx(15e3 * 4.0, rel=2e-6)
 
@@ -134,9 +131,7 @@ def test_closes_into_the_melt(material: str, power: str) -> None:
 
 
 def leaking_case() -> Setup:
-    return setup_of(
-        drive_case("tube", 'surface_field = "80 kA/m"', "3 kHz", 'duration = "4 s"', tolerance="1 K")
-    )
+    return setup_of(drive_case("tube", 'surface_field = "80 kA/m"', "3 kHz", 'duration = "4 s"', tolerance="1 K"))
 
 
 def test_the_leaking_case_is_tight_as_it_is() -> None:
@@ -174,7 +169,7 @@ def test_dropping_a_cell_is_noticed(cell: int, monkeypatch: pytest.MonkeyPatch) 
 @pytest.mark.parametrize("stage", [1, 2, 3])
 def test_dropping_a_stage_is_noticed(stage: int, monkeypatch: pytest.MonkeyPatch) -> None:
     # The accounts of one stage of the step are lost, the cells keep theirs.
-    whole = stepper.rosenbrock_step
+    whole = rosenbrock_step
 
     def without(
         H: Array, extra: Array, first: Rates, matrix: Matrix, volume: Array, step: float, rates: object
@@ -189,14 +184,14 @@ def test_dropping_a_stage_is_noticed(stage: int, monkeypatch: pytest.MonkeyPatch
 
         return whole(H, extra, first, matrix, volume, step, forgetful)
 
-    monkeypatch.setattr(stepper, "rosenbrock_step", without)
+    monkeypatch.setattr("thermal.stepper.rosenbrock_step", without)
     with pytest.raises(BalanceError):
         run(leaking_case())
 
 
 def test_dropping_the_linearised_loss_is_noticed(monkeypatch: pytest.MonkeyPatch) -> None:
     # The accounts must follow the same linearised loss as the cells do.
-    whole = stepper.rosenbrock_step
+    whole = rosenbrock_step
 
     def without(
         H: Array, extra: Array, first: Rates, matrix: Matrix, volume: Array, step: float, rates: object
@@ -206,6 +201,6 @@ def test_dropping_the_linearised_loss_is_noticed(monkeypatch: pytest.MonkeyPatch
         loose = whole(H, extra, first, plain, volume, step, rates)  # type: ignore[arg-type]  # any callable
         return Step(done.H, loose.gained, done.extra, done.error)
 
-    monkeypatch.setattr(stepper, "rosenbrock_step", without)
+    monkeypatch.setattr("thermal.stepper.rosenbrock_step", without)
     with pytest.raises(BalanceError):
         run(leaking_case())

@@ -10,7 +10,8 @@ Array = npt.NDArray[np.float64]
 
 Status = Literal["finished", "target", "limit", "cannot_reach", "interrupted"]
 """finished: all stages done, no target asked; target: every target met; limit: done, but the solidus was passed or
-the run had to stop at the liquidus; cannot_reach: a target was not met; interrupted: stopped by the user. (A run that finds no solution raises.)"""
+the run had to stop at the liquidus; cannot_reach: a target was not met; interrupted: stopped by the user. (A run
+that finds no solution raises.)"""
 
 
 @dataclass(frozen=True)
