@@ -213,7 +213,7 @@ def run(setup: Setup, on_state: Callable[[State], None] | None = None) -> Histor
     BalanceError : the energy accounts do not close.
     """
     began = time.perf_counter()
-    recorder = Recorder(setup.sampler.nodes, setup.section.mesh.edges)
+    recorder = Recorder(setup.sampler, setup.section.mesh.edges)
     records: list[StageRecord] = []
     solves = rejected = 0
     per_stage = 0

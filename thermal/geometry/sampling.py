@@ -45,6 +45,17 @@ class Sampler:
         share = (place - self.nodes[left]) / (self.nodes[left + 1] - self.nodes[left])
         return np.asarray((1.0 - share) * extended[..., left] + share * extended[..., left + 1])
 
+    def hottest_depth(self, extended: Array) -> float:
+        """Depth [m] of the hottest point, the top of the parabola through the three hottest nodes (n + 2,)."""
+        i = int(np.argmax(extended))
+        if not 0 < i < extended.size - 1:
+            return float(self.nodes[-1] - self.nodes[i])
+        x0, x1, x2 = self.nodes[i - 1 : i + 2]
+        left = (extended[i] - extended[i - 1]) / (x1 - x0)
+        right = (extended[i + 1] - extended[i]) / (x2 - x1)
+        top = 0.5 * (x0 + x1) + 0.5 * (x2 - x0) * left / (left - right) if left > right else x1
+        return float(self.nodes[-1] - top)
+
     def readings(self, extended: Array, depths: dict[str, float]) -> dict[str, Array]:
         """Every reading (...,) [K] by name, from temperatures (..., n + 2) at the nodes and named depths [m].
 

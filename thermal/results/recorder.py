@@ -4,6 +4,7 @@ from dataclasses import dataclass, field
 
 import numpy as np
 
+from thermal.geometry.sampling import Sampler
 from thermal.interfaces import Array, EddyField, OperatingPoint
 from thermal.results.history import History, StageRecord, Status
 
@@ -35,10 +36,10 @@ class State:
 class Recorder:
     """Keeps states until history() is asked for.
 
-    nodes : (n + 2,) [m] core, cell centres, surface ; edges : (n + 1,) [m].
+    sampler : reads the section ; edges : (n + 1,) [m] cell faces.
     """
 
-    nodes: Array
+    sampler: Sampler
     edges: Array
     states: list[State] = field(default_factory=list)
 
@@ -69,13 +70,13 @@ class Recorder:
             time=series("time"),
             stage=np.array([s.stage for s in states], dtype=np.int64),
             step=series("step"),
-            r=self.nodes[1:-1],
+            r=self.sampler.nodes[1:-1],
             edges=self.edges,
             T=extended[:, 1:-1],
             enthalpy=np.array([s.H for s in states]),
             heat=np.array([s.field.heat for s in states]),
             readings={name: np.array([s.readings[name] for s in states]) for name in states[0].readings},
-            maximum_depth=self.nodes[-1] - self.nodes[np.argmax(extended, axis=1)],
+            maximum_depth=np.array([self.sampler.hottest_depth(row) for row in extended]),
             absorbed_power=np.array([s.field.power for s in states]),
             supply_power=of_point("supply_power"),
             coil_loss=of_point("coil_loss"),

@@ -87,3 +87,12 @@ def test_mean(shape):
 
     assert_allclose(mean(np.full(mesh.r.shape, 812.0)), 812.0, rtol=1e-13)
     assert_allclose(mean((mesh.r / OUTER) ** 2), MEANS[shape], rtol=1e-3)
+
+
+def test_the_hottest_point_is_found_between_the_nodes():
+    sampler = Sampler.of(MESHES["bar"])
+    top = 0.8 * OUTER
+    profile = 1000.0 - 1e6 * (sampler.nodes - top) ** 2
+    assert_allclose(sampler.hottest_depth(profile), OUTER - top, rtol=1e-9)
+    assert sampler.hottest_depth(sampler.nodes) == 0.0
+    assert_allclose(sampler.hottest_depth(-sampler.nodes), OUTER, rtol=1e-12)
