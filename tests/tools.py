@@ -72,7 +72,7 @@ class Clock:
     """
 
     needs_readings: bool = False
-    gain: tuple[str, float] = ("surface", 0.0)
+    gain: tuple[str, float, float] = ("surface", 0.0, 1.0)
 
     def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
         return Demand("surface_field", memory)

@@ -26,13 +26,16 @@ from thermal.geometry.coil import Coil
 from thermal.geometry.grading import graded_edges
 from thermal.geometry.mesh import Mesh
 from thermal.geometry.sampling import Sampler
-from thermal.geometry.shapes import cylinder, plate
+from thermal.geometry.shapes import cut, cylinder, plate
 from thermal.interfaces import Array, BoundaryLoss, Demand, PropertyOf, Supply
 from thermal.schedule import Stage, Stop
 from thermal.setup import Losses, Setup
 
 COPPER_EMISSIVITY = 0.6
 """Emissivity of the bore of a bare copper coil, tarnished: 0.5-0.7 (common practice)."""
+
+FIELD_PARTS = 3
+"""Field cells in each cell of a magnetic workpiece."""
 
 WALL_FACTOR_WARNING = 1.2
 
@@ -70,7 +73,10 @@ def build(case: Case) -> Setup:
     def source_on(mesh: Mesh) -> SectionSource:
         path = None if coil is None else _path(case, coil, mesh, frequency, filled)
         law = interpolated(material.resistivity)
-        return SectionSource(mesh, RadialSolver(mesh), law, material.magnetics, path, heated_share)
+        # Where the Curie front passes, the field needs finer cells than the heat.
+        parts = 1 if material.magnetics.linear else FIELD_PARTS
+        solver = RadialSolver(cut(mesh, parts))
+        return SectionSource(mesh, solver, law, material.magnetics, path, heated_share)
 
     depth = _smallest_depth(case, material, frequency, supply, source_on)
     mesh = _mesh(case, depth, case.numerics.refinement)

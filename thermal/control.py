@@ -15,8 +15,11 @@ class Control(Protocol):
         ...
 
     @property
-    def gain(self) -> tuple[str, float]:
-        """Reading (surface or mean) the demand answers at once, and fall of the power with it [W/K]; 0 for none."""
+    def gain(self) -> tuple[str, float, float]:
+        """Reading (surface or mean) the demand answers at once, fall of the power with it [W/K] and reset [s].
+
+        A fall of 0 for a demand that answers nothing.
+        """
         ...
 
     def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
@@ -34,7 +37,7 @@ class FixedDrive:
 
     fixed: Demand
     needs_readings: bool = False
-    gain: tuple[str, float] = ("surface", 0.0)
+    gain: tuple[str, float, float] = ("surface", 0.0, 1.0)
 
     def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
         """The demand."""
@@ -67,9 +70,9 @@ class HoldTemperature:
     needs_readings: bool = True
 
     @property
-    def gain(self) -> tuple[str, float]:
-        """The surface or the mean, and C/response [W/K]."""
-        return ("mean" if self.reading == "mean" else "surface"), self.capacity / self.response
+    def gain(self) -> tuple[str, float, float]:
+        """The surface or the mean, C/response [W/K] and the reset [s]."""
+        return ("mean" if self.reading == "mean" else "surface"), self.capacity / self.response, self.reset
 
     def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
         """Absorbed power [W], never negative."""

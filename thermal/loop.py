@@ -66,7 +66,11 @@ def _march_stage(setup: Setup, number: int, stage: Stage, book: "_Book") -> Iter
         far = distance(end)
         landed = far <= 0.0
         if landed:
-            taken, end, length = stepper.land(now, length, far, distance)
+            found = stepper.land(now, length, far, distance)
+            if found is None:
+                step = 0.3 * length
+                continue
+            taken, end, length = found
         timed_out = not landed and length >= left
         book.accept(taken.gained, end, end_time if timed_out else book.clock + length)
         watch.see(book.clock - length, book.clock, end.point.limit)

@@ -21,6 +21,7 @@ GROWTH_AT_MOST = 4.0
 SHRINK_AT_MOST = 0.2
 SAFETY = 0.85
 STEP_AT_LEAST = 1e-9
+LANDINGS_AT_MOST = 30
 LANDING = 1e-3
 """A stop is met within this many kelvin."""
 
@@ -187,7 +188,7 @@ class Stepper:
 
     def _feedback(self, dT_dH: Array, field: EddyField, accounts: Array) -> Feedback | None:
         """What the controller adds to the matrix: without it, it would hold the steps to its response time."""
-        reading, gain = self.stage.control.gain
+        reading, gain, reset = self.stage.control.gain
         if gain == 0.0 or field.power <= 0.0:
             return None
         if reading == "mean":
@@ -198,15 +199,18 @@ class Stepper:
         per_watt = np.zeros_like(accounts)
         electrical = 1 + len(ELECTRICAL) if self.setup.has_coil else 1
         per_watt[:electrical] = accounts[:electrical] / field.power
-        return Feedback(self._volume * field.heat / field.power, pull, per_watt)
+        return Feedback(self._volume * field.heat / field.power, pull, per_watt, reset)
 
     def _readings(self, extended: Array) -> dict[str, float]:
         """Every reading [K] by name."""
         found = self.setup.sampler.readings(extended, self.setup.depths)
         return {name: float(value) for name, value in found.items()}
 
-    def try_step(self, start: Moment, step: float) -> tuple[Step, Moment]:
-        """One step of a given length from a moment; the embedded error is not judged."""
+    def try_step(self, start: Moment, step: float, reach: float | None = None) -> tuple[Step, Moment]:
+        """One step of a given length from a moment; the embedded error is not judged.
+
+        reach : [s] how far the matrix looks ahead, the step itself if left out.
+        """
         recent = (start.point, start.field)
 
         def rates(H: Array, memory: Array) -> Rates:
@@ -219,7 +223,7 @@ class Stepper:
                 recent = (point, field)
             return found
 
-        matrix = self._ahead(start, step)
+        matrix = self._ahead(start, step if reach is None else reach)
         taken = rosenbrock_step(start.H, start.memory, start.rates, matrix, self._volume, step, rates)
         return taken, self.moment(taken.H, taken.extra, recent, (taken.H - start.H) / step)
 
@@ -283,17 +287,23 @@ class Stepper:
 
     def land(
         self, start: Moment, length: float, end_distance: float, distance: Callable[[Moment], float]
-    ) -> tuple[Step, Moment, float]:
+    ) -> tuple[Step, Moment, float] | None:
         """Retake a step that went past a stop so that it ends on it (secant with bracketing).
 
         length : [s] of the step that went past ; end_distance : its distance there, <= 0.
+        Returns None where a shorter step does not keep the tolerance: the caller goes on from the start with one.
         """
         low, low_d = 0.0, distance(start)
         high, high_d = length, end_distance
-        for _ in range(30):
+        for _ in range(LANDINGS_AT_MOST):
             trial = high - high_d * (high - low) / (high_d - low_d)
             trial = min(max(trial, low + 0.02 * (high - low)), high - 0.001 * (high - low))
-            taken, end = self.try_step(start, trial)
+            try:
+                taken, end = self.try_step(start, trial, reach=length)
+            except (NoConvergence, OutOfRange):
+                return None
+            if self.error_of(taken, start, end) > 1.0:
+                return None
             d = distance(end)
             if abs(d) < LANDING:
                 return taken, end, trial
@@ -302,7 +312,7 @@ class Stepper:
                 high_d = high_d if high_d < -LANDING else -LANDING
             else:
                 high, high_d = trial, d
-        raise NoConvergence("the moment at which the target is met could not be found")
+        return None
 
 
 def loss_account(face: str, loss: str) -> str:

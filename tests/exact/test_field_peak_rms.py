@@ -19,6 +19,7 @@ class Noting:
     """A permeability that notes the amplitudes it is asked for."""
 
     linear = False
+    curie_temperature = None
 
     def __init__(self):
         self.asked = []
@@ -33,6 +34,7 @@ class Noting:
 
 class Constant:
     linear = True
+    curie_temperature = None
 
     def __init__(self, mu_r=1.0):
         self.mu_r = mu_r

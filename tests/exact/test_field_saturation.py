@@ -23,6 +23,7 @@ class FullySaturated:
     """mu = B_s/|H|; held below a thousandth of the surface field, where no power is left."""
 
     linear = False
+    curie_temperature = None
 
     def factor(self, T):
         return np.ones_like(T)

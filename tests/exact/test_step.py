@@ -88,7 +88,7 @@ CONTROLLED = Matrix(
     WRONG.conductance,
     WRONG.dT_dH,
     SLOPES,
-    Feedback(RNG.uniform(0.0, 1.0, CELLS), RNG.uniform(-0.3, 1.0, CELLS), RNG.uniform(-1.0, 1.0, 2)),
+    Feedback(RNG.uniform(0.0, 1.0, CELLS), RNG.uniform(-0.3, 1.0, CELLS), RNG.uniform(-1.0, 1.0, 2), reset=0.7),
 )
 """Neither has anything to do with the system below."""
 
@@ -167,7 +167,7 @@ def test_conserves_with_any_matrix_and_nonlinear_losses(seed: int, controlled: b
     n = 12
     volume = rng.uniform(1e-6, 1e-3, n)
     share = rng.uniform(0.0, 1.0, n)
-    feedback = Feedback(share / share.sum(), rng.uniform(0.0, 1e-5, n), np.array([1.0, 0.0, 0.0]))
+    feedback = Feedback(share / share.sum(), rng.uniform(0.0, 1e-5, n), np.array([1.0, 0.0, 0.0]), reset=2.0)
     matrix = Matrix(
         rng.uniform(0.0, 50.0, n - 1),
         rng.uniform(0.0, 1e-6, n),
@@ -185,13 +185,13 @@ def test_conserves_with_any_matrix_and_nonlinear_losses(seed: int, controlled: b
         end, sides = 1e-11 * T[-1:] ** 4, 1e-3 * (T - 290.0) ** 1.25
         net += source - sides
         net[-1:] -= end
-        return Rates(net, np.array([source.sum(), end.sum(), sides.sum()]), np.zeros(0))
+        return Rates(net, np.array([source.sum(), end.sum(), sides.sum()]), np.array([1e-3 * (T[0] - 500.0)]))
 
-    H, extra = 1e9 * rng.uniform(1.0, 2.0, n), np.zeros(0)
+    H, extra = 1e9 * rng.uniform(1.0, 2.0, n), np.array([50.0])
     start, gained = H, np.zeros(3)
     for h in (1e-3, 0.1, 2.0, 30.0):
         step = rosenbrock_step(H, extra, rates(H, extra), matrix, volume, h, rates)
-        H, gained = step.H, gained + step.gained
+        H, extra, gained = step.H, step.extra, gained + step.gained
     stored = float(volume @ (H - start))
     size = max(abs(stored), float(np.abs(gained).max()))
     assert abs(stored - (gained[0] - gained[1] - gained[2])) < 1e-13 * size + 1e-13 * float(volume @ start)

@@ -177,8 +177,10 @@ def test_settled_guess_costs_one_solve(subject):
 def test_no_permeability_above_curie(subject, H):
     source, T = at(subject, "steel, surface past Curie")
     field = source.at(T)(subject.excitation(H), FREQUENCY, None)
-    assert np.all(field.mu_r[CURIE <= T] == 1.0)
-    assert np.all(field.mu_r[CURIE > T] > 1.0)
+    # A cell the Curie temperature passes through keeps the mean of both sides.
+    within = np.diff(T).max()
+    assert np.all(field.mu_r[CURIE + within <= T] == 1.0)
+    assert np.all(field.mu_r[CURIE - within > T] > 1.0)
     source, T = at(subject, "steel, all past Curie")
     field = source.at(T)(subject.excitation(H), FREQUENCY, None)
     assert np.all(field.mu_r == 1.0)
@@ -186,7 +188,8 @@ def test_no_permeability_above_curie(subject, H):
 
 @SUBJECT
 def test_permeability_goes_to_one_smoothly(subject):
-    # Towards the Curie point from below, the power approaches that of the same piece just above it.
+    # Towards the Curie point from below, the power approaches that of the same piece just above it, over the 0.05 K on
+    # either side that the smallest mean spans.
     resistivity, magnetics, *_ = STATES["steel, cold"]
     source = subject.source(resistivity, magnetics)
     n = source.mesh.r.size
@@ -195,8 +198,8 @@ def test_permeability_goes_to_one_smoothly(subject):
     def power(T):
         return source.at(np.full(n, T))(excitation, FREQUENCY, None).power
 
-    above = power(CURIE + 0.01)
-    gaps = [abs(power(CURIE - below) / above - 1.0) for below in (100.0, 10.0, 1.0, 1e-3, 1e-8)]
+    above = power(CURIE + 0.06)
+    gaps = [abs(power(CURIE - below) / above - 1.0) for below in (100.0, 10.0, 1.0, 0.0, -0.03, -0.0499)]
     assert np.all(np.diff(gaps) < 0.0)
     assert gaps[-1] < 0.02
 

@@ -51,15 +51,16 @@ class Rates:
 
 @dataclass(frozen=True, slots=True)
 class Feedback:
-    """A controller that answers the state with power: d(heat_flow)/dH = -share x pull.
+    """A controller that answers the state with power P, and whose memory J, part of P, is the only further unknown.
 
-    share : (n,) of the power each cell gets, adding up to 1 ; pull : (n,) [W m3/J] fall of the power with H ;
-    accounts : (p,) what every account gains per watt of it.
+    d(heat_flow) = share x dP, dP = dJ - pull dH and d(dJ/dt) = -pull dH/reset. share : (n,) of the power each cell
+    gets, adding up to 1 ; pull : (n,) [W m3/J] ; accounts : (p,) what every account gains per watt ; reset : [s].
     """
 
     share: Array
     pull: Array
     accounts: Array
+    reset: float
 
 
 @dataclass(frozen=True, slots=True)
@@ -122,34 +123,40 @@ def rosenbrock_step(
     *lu, _ = factors
     feedback = matrix.feedback
     if feedback is not None:
-        # Sherman-Morrison: the controller adds a matrix of rank one.
+        # With J eliminated the controller adds a matrix of rank one (Sherman-Morrison).
         answer, _ = dgttrs(*lu, feedback.share)
-        reply = shift / (1.0 + shift * float(feedback.pull @ answer))
+        firmness = shift * (1.0 + shift / feedback.reset)
+        yields = 1.0 + firmness * float(feedback.pull @ answer)
 
     n, p = H.size, first.accounts.size
     # Increments of cells, accounts and further unknowns, a row a stage.
     k = np.empty((STAGES, n + p + extra.size))
     here = first
     for i in range(STAGES):
-        right = step * here.heat_flow if i == 0 else None
+        carried = np.zeros(k.shape[1])
         if i > 0:
             ahead = _ALPHA[i] @ k[:i]
             here = rates(H + ahead[:n], extra + ahead[n + p :])
-            carried = _CARRIED[i] @ k[:i, :n]
-            right = step * here.heat_flow + volume * carried
+            carried = _CARRIED[i] @ k[:i]
+        right = step * here.heat_flow + volume * carried[:n]
+        account = step * here.accounts
+        # Further unknowns have no row in the matrix (treated explicitly), unless they are the memory of a feedback.
+        k[i, n + p :] = step * here.extra
+        if feedback is not None:
+            memory = step * float(here.extra[0]) + carried[-1]
+            right += (shift * memory) * feedback.share
         solved, info = dgttrs(*lu, right)
         if info != 0:
             raise NoConvergence("the heat equations of the section could not be solved")
-        account = step * here.accounts
         if feedback is not None:
-            fall = reply * float(feedback.pull @ solved)
-            solved = solved - fall * answer
-            account -= fall * feedback.accounts
+            fall = float(feedback.pull @ solved) / yields
+            solved = solved - (firmness * fall) * answer
+            memory -= shift / feedback.reset * fall
+            account += (shift * (memory - fall)) * feedback.accounts
+            k[i, -1] = memory - carried[-1]
         for index, cells, slope in matrix.slopes:
             account[index] += shift * float(np.dot(slope, solved[cells]))
-        k[i, :n] = solved if i == 0 else solved - carried
+        k[i, :n] = solved - carried[:n]
         k[i, n : n + p] = account
-        # The further unknowns are treated explicitly: their rows of the matrix are zero.
-        k[i, n + p :] = step * here.extra
     gain = _WEIGHTS @ k
     return Step(H + gain[:n], gain[n : n + p], extra + gain[n + p :], _DIFFERENCE @ k[:, :n])

@@ -6,12 +6,13 @@ gives R_e = (1/K - 1) l/(mu_0 A_bore). The result is an average over the length 
 """
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 import numpy as np
 import numpy.typing as npt
 
 from thermal.constants import MU_0
+from thermal.eddy.cell_mean import CellMean
 from thermal.eddy.radial import Magnetics, Profile, RadialSolver
 from thermal.errors import NoConvergence
 from thermal.geometry.mesh import Mesh
@@ -65,6 +66,7 @@ class SectionSource:
     Parameters
     ----------
     mesh, resistivity, magnetics : the workpiece.
+    solver : of the field, on that mesh or on one with every cell cut into equal parts.
     path : the coil around it, or None where the surface field itself is the excitation.
     heated_share : length of the workpiece inside the coil over its length; heat is averaged over the whole of it.
     """
@@ -75,16 +77,25 @@ class SectionSource:
     magnetics: Magnetics
     path: FluxPath | None
     heated_share: float = 1.0
+    _factor: PropertyOf = field(init=False, repr=False)
+    _parts: int = field(init=False, repr=False)
+
+    def __post_init__(self) -> None:
+        curie, law = self.magnetics.curie_temperature, self.magnetics.factor
+        object.__setattr__(self, "_factor", law if curie is None else CellMean(self.solver.mesh, law, curie))
+        object.__setattr__(self, "_parts", self.solver.mesh.r.size // self.mesh.r.size)
 
     def at(self, T: Array) -> FieldOf:
         """Field as a function of excitation and frequency at cell temperatures T (n,) [K].
 
         The excitation is the coil current, or without a coil the surface field; rms.
         """
+        if self._parts > 1:
+            T = straight(self.solver.mesh.r, self.mesh.r, T)
         resistivity = self.resistivity(T)
         if not np.isfinite(resistivity).all():
             raise NoConvergence("the resistivity of the workpiece is not a number")
-        factor = self.magnetics.factor(T)
+        factor = self._factor(T)
         # A section without permeability left responds in proportion: one solve serves every excitation.
         proportional = self.magnetics.linear or not factor.any()
         known: dict[float, Profile] = {}
@@ -94,7 +105,7 @@ class SectionSource:
                 profile, solves = known[frequency], 0
                 H_surface = self._surface_field(profile.impedance, excitation, frequency)
             else:
-                if guess is None or self.magnetics.linear:
+                if guess is None or proportional:
                     start = self._first_mu(factor, excitation)
                 else:
                     start = guess.mu_r
@@ -108,6 +119,9 @@ class SectionSource:
                 )
                 known[frequency] = profile
             heat = profile.heat * (H_surface**2 * self.heated_share)
+            if self._parts > 1:
+                watts = heat * self.solver.mesh.volume
+                heat = watts.reshape(-1, self._parts).sum(axis=1) / self.mesh.volume
             power = float(heat @ self.mesh.volume)
             if not math.isfinite(power):
                 raise NoConvergence("the field in the workpiece is not a number")
@@ -125,3 +139,12 @@ class SectionSource:
         H = excitation * (self.path.turns / self.path.length if self.path else 1.0)
         peak = np.full(factor.shape, math.sqrt(2.0) * H)
         return np.asarray(1.0 + factor * self.magnetics.effective_susceptibility(peak))
+
+
+def straight(r: Array, centres: Array, T: Array) -> Array:
+    """Temperatures at r, straight between the cell centres, on to the outer surface, level to the inner end."""
+    found = np.interp(r, centres, T)
+    outside = r > centres[-1]
+    slope = (T[-1] - T[-2]) / (centres[-1] - centres[-2])
+    found[outside] = T[-1] + slope * (r[outside] - centres[-1])
+    return found

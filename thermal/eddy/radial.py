@@ -33,6 +33,11 @@ class Magnetics(Protocol):
         """True where mu_r does not depend on the field."""
         ...
 
+    @property
+    def curie_temperature(self) -> float | None:
+        """Temperature [K] from which factor is zero, None where there is none."""
+        ...
+
     def factor(self, T: Array) -> Array:
         """Share of the saturation left at T [K]."""
         ...
@@ -60,6 +65,7 @@ class RadialSolver:
     """Field solver bound to one mesh: cylinder, tube (coil outside, flux in the bore counted) or plate."""
 
     def __init__(self, mesh: Mesh) -> None:
+        self.mesh = mesh
         edges = mesh.edges
         inner, outer = edges[:-1], edges[1:]
         self._h = outer - inner

@@ -3,6 +3,7 @@
 import numpy as np
 import numpy.typing as npt
 
+from thermal.geometry.grading import refine
 from thermal.geometry.mesh import Face, Mesh
 
 Array = npt.NDArray[np.float64]
@@ -36,6 +37,12 @@ def plate(edges: Array, width: float, length: float) -> Mesh:
     areas = np.full(edges.shape, 2.0 * width * length)
     faces = _radial_faces(edges, areas, ends=2.0 * layer * (width + length))
     return _radial_mesh("planar", edges, length, width, layer * width * length, areas, faces)
+
+
+def cut(mesh: Mesh, parts: int) -> Mesh:
+    """The same workpiece with every cell cut into equal parts."""
+    edges = refine(mesh.edges, parts)
+    return plate(edges, mesh.width, mesh.length) if mesh.kind == "planar" else cylinder(edges, mesh.length)
 
 
 def _radial_faces(edges: Array, areas: Array, ends: Array) -> dict[str, Face]:
