@@ -62,7 +62,7 @@ _DIMENSIONS: dict[str, _Dimension] = {
     ),
     "temperature_difference": _of("a temperature difference", "K", "K", {"K": 1}),
     "power": _of("a power", "kW", "W, kW", {"W": 1, "mW": 1e-3, "kW": 1e3, "MW": 1e6}),
-    "frequency": _of("a frequency", "kHz", "Hz, kHz, MHz", {"Hz": 1, "kHz": 1e3, "MHz": 1e6}),
+    "frequency": _of("a frequency", "Hz", "Hz, kHz, MHz", {"Hz": 1, "kHz": 1e3, "MHz": 1e6}),
     "current": _of("a current", "A", "A, kA", {"A": 1, "mA": 1e-3, "kA": 1e3}),
     "voltage": _of("a voltage", "V", "V, kV", {"V": 1, "mV": 1e-3, "kV": 1e3}),
     "resistance": _of("a resistance", "mohm", "ohm, mohm", {"ohm": 1, "mohm": 1e-3, "uohm": 1e-6, "kohm": 1e3}),
@@ -129,7 +129,19 @@ _DIMENSIONS: dict[str, _Dimension] = {
 _QUANTITY = re.compile(r"\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)\s*(1|[^\d\s.,+-].*?)?\s*")
 _DROPPED = str.maketrans({" ": None, "·": None, "*": None, "(": None, ")": None, "^": None})
 # Micro sign and Greek mu, ohm sign and Greek omega look alike and are both in use.
-_SAME = str.maketrans({"\u00b5": "u", "\u03bc": "u", "\u2126": "ohm", "\u03a9": "ohm", "²": "2", "³": "3", "°": "deg"})
+# The masculine ordinal º stands beside the degree sign on some keyboards.
+_SAME = str.maketrans(
+    {
+        "°": "deg",
+        "\u00ba": "deg",
+        "\u00b5": "u",
+        "\u03bc": "u",
+        "\u2126": "ohm",
+        "\u03a9": "ohm",
+        "²": "2",
+        "³": "3",
+    }
+)
 
 
 def quantity(text: str, dimension: str) -> float:

@@ -68,17 +68,17 @@ class ObedientSupply:
 class Clock:
     """Demands the time since the start of the stage, so that a source may depend on it (plays Control).
 
-    The memory of the control is the clock: its rate is 1.
+    The first memory of the control is the clock: its rate is 1.
     """
 
     needs_readings: bool = False
     gain: tuple[str, float, float] = ("surface", 0.0, 1.0)
 
-    def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
-        return Demand("surface_field", memory)
+    def demand(self, readings: dict[str, float], loss: float, memory: Array) -> Demand:
+        return Demand("surface_field", float(memory[0]))
 
-    def memory_rate(self, readings: dict[str, float], clipped: bool) -> float:
-        return 1.0
+    def memory_rates(self, readings: dict[str, float], memory: Array, clipped: int) -> Array:
+        return np.array([1.0, 0.0])
 
 
 class Law(Protocol):

@@ -6,6 +6,21 @@ from io import TextIOWrapper
 
 def main() -> None:
     """Run the command line."""
+    try:
+        _run()
+    except KeyboardInterrupt:
+        print("interrupted, nothing was written", file=sys.stderr)
+        sys.exit(130)
+    except OSError as error:
+        # Printing failed outside a command, in --help for example.
+        from thermal.cli.exits import BAD_INPUT, drop_output
+
+        drop_output()
+        print(f"the answer cannot be printed ({error.strerror})", file=sys.stderr)
+        sys.exit(BAD_INPUT)
+
+
+def _run() -> None:
     from thermal.cli.main import app
 
     for stream in (sys.stdout, sys.stderr):

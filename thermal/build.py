@@ -2,6 +2,7 @@
 
 import math
 from collections.abc import Callable
+from dataclasses import replace
 
 import numpy as np
 
@@ -67,8 +68,12 @@ def build(case: Case) -> Setup:
     ]
     notes: list[str] = []
 
-    share, heated_share, filled = _lengths(case, coil)
+    covered = _covered(case, coil)
+    row = coil is not None and case.workpiece.neighbours == "touching"
+    filled = coil.length if coil is not None and row else covered
     supply = _supply(case, frequency, coil, assumptions, notes)
+    if coil is not None:
+        notes += _remarks(case, coil, material)
 
     def source_on(mesh: Mesh) -> SectionSource:
         path = None if coil is None else _path(case, coil, mesh, frequency, filled)
@@ -76,10 +81,10 @@ def build(case: Case) -> Setup:
         # Where the Curie front passes, the field needs finer cells than the heat.
         parts = 1 if material.magnetics.linear else FIELD_PARTS
         solver = RadialSolver(cut(mesh, parts))
-        return SectionSource(mesh, solver, law, material.magnetics, path, heated_share)
+        return SectionSource(mesh, solver, law, material.magnetics, path)
 
-    depth = _smallest_depth(case, material, frequency, supply, source_on)
-    mesh = _mesh(case, depth, case.numerics.refinement)
+    depth = _smallest_depth(case, material, supply, covered, source_on)
+    mesh = _mesh(case, depth, case.numerics.refinement, covered)
     table = EnthalpyTable(material.density * material.caloric.h_nodes, material.caloric.T_nodes)
     section = Section(mesh, table, interpolated(material.conductivity))
     mass = material.density * float(mesh.volume.sum())
@@ -92,9 +97,12 @@ def build(case: Case) -> Setup:
         source=source_on(mesh),
         supply=supply,
         has_coil=coil is not None,
-        share=share,
+        share=covered / coil.length if coil is not None and row else 1.0,
         losses=_losses(case, material, coil, assumptions),
-        stages=tuple(_stage(stage, material, mass) for stage in case.schedule),
+        stages=tuple(
+            replace(_stage(words, material, mass, case.workpiece.section), supply=_direct(case, index))
+            for index, words in enumerate(case.schedule)
+        ),
         depths={reading.name: min(reading.depth, case.workpiece.section) for reading in case.readings},
         T_initial=case.workpiece.initial,
         T_end=T_end,
@@ -139,27 +147,46 @@ def interpolated(curve: Property) -> PropertyOf:
     return look_up
 
 
-def _lengths(case: Case, coil: Coil | None) -> tuple[float, float, float]:
-    """Share of coil quantities, heated share of the length, and length of bore filled with metal [m]."""
-    piece = case.workpiece
-    if coil is None:
-        return 1.0, 1.0, 0.0
-    inside = min(piece.length, coil.length)
-    if piece.neighbours == "touching":
-        return inside / coil.length, inside / piece.length, coil.length
-    return 1.0, inside / piece.length, inside
+def _covered(case: Case, coil: Coil | None) -> float:
+    """Length of the workpiece that is computed [m]: all of it, or what the coil covers of a longer one."""
+    return case.workpiece.length if coil is None else min(case.workpiece.length, coil.length)
 
 
-def _mesh(case: Case, depth: float, refinement: int) -> Mesh:
+def _remarks(case: Case, coil: Coil, material: Material) -> list[str]:
+    """What the reader must know about how well the coil model fits this piece."""
+    piece, remarks = case.workpiece, []
+    diameter = max(coil.opening)
+    covered = _covered(case, coil)
+    if piece.length > coil.length:
+        remarks.append(
+            f"The piece ({1e3 * piece.length:.4g} mm) is longer than the coil: only the {1e3 * covered:.4g} mm inside "
+            "the coil are computed, as if no heat flowed along the length. Time, temperature and energy per tonne are "
+            "those of that part."
+        )
+    if coil.length < diameter:
+        remarks.append("The coil is shorter than its bore is wide: expect errors of 10 to 20 % in power (estimate).")
+    alone = piece.neighbours == "none"
+    if alone and covered < 0.8 * coil.length:
+        worst = 20 if not material.magnetics.linear else 10
+        remarks.append(
+            f"The piece fills only {100 * covered / coil.length:.0f} % of the coil: power may be off by up to "
+            f"{worst} % (estimate)."
+        )
+    if alone and piece.length < piece.outline[0]:
+        remarks.append("The piece is shorter than it is wide: its ends count, which one dimension does not see.")
+    return remarks
+
+
+def _mesh(case: Case, depth: float, refinement: int, length: float) -> Mesh:
     piece = case.workpiece
     match piece:
         case Plate():
-            return plate(graded_edges(0.0, piece.thickness / 2.0, depth, refinement), piece.width, piece.length)
+            return plate(graded_edges(0.0, piece.thickness / 2.0, depth, refinement), piece.width, length)
         case Tube():
             outer = piece.outer_diameter / 2.0
-            return cylinder(graded_edges(outer - piece.wall, outer, depth, refinement), piece.length)
+            return cylinder(graded_edges(outer - piece.wall, outer, depth, refinement), length)
         case _:
-            return cylinder(graded_edges(0.0, piece.diameter / 2.0, depth, refinement), piece.length)
+            return cylinder(graded_edges(0.0, piece.diameter / 2.0, depth, refinement), length)
 
 
 def _path(case: Case, coil: Coil, mesh: Mesh, frequency: float, filled: float) -> FluxPath:
@@ -182,10 +209,7 @@ def _path(case: Case, coil: Coil, mesh: Mesh, frequency: float, filled: float) -
 
 def _supply(case: Case, frequency: float, coil: Coil | None, assumptions: list[str], notes: list[str]) -> Supply:
     if coil is None or case.coil is None or case.supply is None:
-        drives = [stage.drive for stage in case.schedule if isinstance(stage, Heat)]
-        powers = [d.absorbed_power for d in drives if d.absorbed_power is not None]
-        fields = [d.surface_field for d in drives if d.surface_field is not None]
-        return DirectDrive(frequency, max(powers, default=None), max(fields, default=None))
+        return DirectDrive(frequency)
     resistivity = copper_resistivity(case.coil.temperature)
     depth = copper_depth(resistivity, frequency)
     if case.coil.wall is None:
@@ -204,18 +228,34 @@ def _supply(case: Case, frequency: float, coil: Coil | None, assumptions: list[s
     return CoilSupply(frequency, winding, words.power, words.max_current, words.max_voltage)
 
 
-def _smallest_depth(case: Case, material: Material, frequency: float, supply: Supply, source_on: _SourceOn) -> float:
-    """Smallest skin depth of the run [m]: at the start, at the field the first heating stage begins with."""
-    heats = [stage for stage in case.schedule if isinstance(stage, Heat)]
-    if not heats:
-        return case.workpiece.section
-    drive = heats[0].drive
-    probe = _mesh(case, case.workpiece.section / 300.0, 1)
+def _smallest_depth(case: Case, material: Material, supply: Supply, length: float, source_on: _SourceOn) -> float:
+    """Smallest skin depth of the run [m]: at the initial temperature, at the fields the heating stages begin with."""
+    depths = [case.workpiece.section]
+    probe = _mesh(case, case.workpiece.section / 300.0, 1, length)
     T = np.full(probe.volume.size, case.workpiece.initial)
-    _, field = supply.operate(source_on(probe).at(T), _demand(drive.kind, drive.value), None)
-    H_peak = np.array([math.sqrt(2.0) * field.H_surface_rms])
-    mu_r = material.magnetics.mu_r(H_peak, T[:1])
-    return float(skin_depth(material.resistivity(T[:1]), frequency, mu_r)[0])
+    for index, stage in enumerate(case.schedule):
+        if not isinstance(stage, Heat):
+            continue
+        frequency = case.frequency(index)
+        driven = _direct(case, index) or supply
+        _, field = driven.operate(source_on(probe).at(T), _demand(stage.drive.kind, stage.drive.value), None)
+        H_peak = np.array([math.sqrt(2.0) * field.H_surface_rms])
+        mu_r = material.magnetics.mu_r(H_peak, T[:1])
+        depths.append(float(skin_depth(material.resistivity(T[:1]), frequency, mu_r)[0]))
+    return min(depths)
+
+
+def _direct(case: Case, index: int) -> DirectDrive | None:
+    """What drives a stage without coil and supply; a hold may use what the heating before it did. None with a coil."""
+    words = case.schedule[index]
+    if (case.coil is not None and case.supply is not None) or not isinstance(words, Heat | Hold):
+        return None
+    if isinstance(words, Heat):
+        return DirectDrive(case.frequency(index))
+    before = [stage.drive for stage in case.schedule[:index] if isinstance(stage, Heat)]
+    powers = [drive.absorbed_power for drive in before if drive.absorbed_power is not None]
+    fields = [drive.surface_field for drive in before if drive.surface_field is not None]
+    return DirectDrive(case.frequency(index), max(powers, default=None), max(fields, default=None))
 
 
 def _demand(kind: str, value: float) -> Demand:
@@ -225,7 +265,7 @@ def _demand(kind: str, value: float) -> Demand:
     raise ValueError(f"unknown drive {kind}")
 
 
-def _stage(words: StageWords, material: Material, mass: float) -> Stage:
+def _stage(words: StageWords, material: Material, mass: float, section: float) -> Stage:
     match words:
         case Heat():
             control: Control = FixedDrive(_demand(words.drive.kind, words.drive.value))
@@ -237,8 +277,11 @@ def _stage(words: StageWords, material: Material, mass: float) -> Stage:
             around = np.array([set_point - 50.0, set_point + 50.0])
             h = material.caloric.enthalpy(around)
             capacity = mass * float(h[1] - h[0]) / 100.0
+            k = float(material.conductivity(np.array([set_point]))[0])
+            # First mode of a wall heated from one side, half its width thick: L^2/(2.5 a).
+            lag = section**2 * material.density * float(h[1] - h[0]) / 100.0 / (2.5 * k)
             control = HoldTemperature(
-                words.at.reading, set_point, capacity, words.response, words.reset, ceiling=set_point
+                words.at.reading, set_point, capacity, words.response, words.reset, lag, ceiling=set_point
             )
             return Stage("hold", control, "coil", None, words.duration)
         case _:
@@ -263,6 +306,12 @@ def _losses(case: Case, material: Material, coil: Coil | None, assumptions: list
     open_air: tuple[BoundaryLoss, ...] = (Radiation("radiation", skin, T_out), _side_convection(case))
     ends: tuple[BoundaryLoss, ...] = (Radiation("radiation", skin, T_out), _end_convection(case))
     alone: dict[str, tuple[BoundaryLoss, ...]] = {"outer": open_air, "ends": ends}
+    if isinstance(piece, Plate):
+        alone["edges"] = ends
+    # Of a piece longer than the coil only the part inside is computed: it has no ends of its own.
+    beyond = coil is not None and piece.length > coil.length
+    if beyond:
+        alone["ends"] = ()
     in_coil = dict(alone)
     if case.coil is not None:
         in_coil["outer"] = _facing_coil(case, skin, assumptions)

@@ -3,7 +3,9 @@
 from dataclasses import dataclass
 from typing import Protocol
 
-from thermal.interfaces import Demand
+import numpy as np
+
+from thermal.interfaces import Array, Demand
 
 
 class Control(Protocol):
@@ -22,12 +24,12 @@ class Control(Protocol):
         """
         ...
 
-    def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
-        """Demand at readings [K], present loss [W] and memory [W]."""
+    def demand(self, readings: dict[str, float], loss: float, memory: Array) -> Demand:
+        """Demand at readings [K], present loss [W] and memory (2,): a shift of the set point [K] and a power [W]."""
         ...
 
-    def memory_rate(self, readings: dict[str, float], clipped: bool) -> float:
-        """Rate of the memory [W/s]; clipped where the supply did not meet the demand."""
+    def memory_rates(self, readings: dict[str, float], memory: Array, clipped: int) -> Array:
+        """Rates of the memory (2,) [K/s], [W/s]; clipped: 1 with the supply at a limit, -1 with it off, else 0."""
         ...
 
 
@@ -39,26 +41,26 @@ class FixedDrive:
     needs_readings: bool = False
     gain: tuple[str, float, float] = ("surface", 0.0, 1.0)
 
-    def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
+    def demand(self, readings: dict[str, float], loss: float, memory: Array) -> Demand:
         """The demand."""
         return self.fixed
 
-    def memory_rate(self, readings: dict[str, float], clipped: bool) -> float:
+    def memory_rates(self, readings: dict[str, float], memory: Array, clipped: int) -> Array:
         """Nothing to remember."""
-        return 0.0
+        return np.zeros(2)
 
 
 @dataclass(frozen=True)
 class HoldTemperature:
     """Keeps a reading at its set point with absorbed power.
 
-    P = loss + C (T_set - T)/response + J and J' = C (T_set - T)/(response reset), J frozen while the supply is at a
-    limit or off. The surface and the mean are held directly. A reading inside the section follows the power too late
-    for that: it is held through the surface, whose set point moves by the deviation of the reading but never above
-    ceiling.
+    P = loss + C (T_set - T)/response + J and J' = C (T_set - T)/(response reset), J kept from growing while the
+    supply is at a limit and from falling while it is off. The surface and the mean are held directly. A reading inside
+    the section follows the power too late for that: it is held through the surface, whose set point is moved by the
+    deviation of the reading and by its integral over the lag of the section, but never above ceiling.
 
     reading ; set_point : [K] ; capacity : heat capacity of the workpiece [J/K] ; response, reset : [s] ;
-    ceiling : [K] hottest the surface may be asked for.
+    lag : [s] in which the section follows its surface ; ceiling : [K] hottest the surface may be asked for.
     """
 
     reading: str
@@ -66,6 +68,7 @@ class HoldTemperature:
     capacity: float
     response: float
     reset: float
+    lag: float
     ceiling: float
     needs_readings: bool = True
 
@@ -74,19 +77,29 @@ class HoldTemperature:
         """The surface or the mean, C/response [W/K] and the reset [s]."""
         return ("mean" if self.reading == "mean" else "surface"), self.capacity / self.response, self.reset
 
-    def demand(self, readings: dict[str, float], loss: float, memory: float) -> Demand:
+    def demand(self, readings: dict[str, float], loss: float, memory: Array) -> Demand:
         """Absorbed power [W], never negative."""
-        power = loss + self.capacity * self._deviation(readings) / self.response + memory
+        off = self._surface_set_point(readings, memory) - self._held(readings)
+        power = loss + self.capacity * off / self.response + float(memory[1])
         return Demand("absorbed_power", power) if power > 0.0 else Demand("off", 0.0)
 
-    def memory_rate(self, readings: dict[str, float], clipped: bool) -> float:
-        """Rate of J [W/s]."""
-        if clipped:
-            return 0.0
-        return self.capacity * self._deviation(readings) / (self.response * self.reset)
+    def memory_rates(self, readings: dict[str, float], memory: Array, clipped: int) -> Array:
+        """Rates of the shift of the set point [K/s] and of J [W/s]; while clipped only towards what is possible."""
+        wanted = self._surface_set_point(readings, memory)
+        off = wanted - self._held(readings)
+        shift = (self.set_point - readings[self.reading]) / self.lag if self._inside and wanted < self.ceiling else 0.0
+        rates = np.array([shift, self.capacity * off / (self.response * self.reset)])
+        return rates if clipped == 0 else np.where(rates * clipped < 0.0, rates, 0.0)
 
-    def _deviation(self, readings: dict[str, float]) -> float:
+    @property
+    def _inside(self) -> bool:
+        return self.reading not in ("surface", "mean")
+
+    def _held(self, readings: dict[str, float]) -> float:
+        return readings["mean"] if self.reading == "mean" else readings["surface"]
+
+    def _surface_set_point(self, readings: dict[str, float], memory: Array) -> float:
+        if not self._inside:
+            return self.set_point
         off = self.set_point - readings[self.reading]
-        if self.reading in ("surface", "mean"):
-            return off
-        return min(self.set_point + off, self.ceiling) - readings["surface"]
+        return min(self.set_point + off + float(memory[0]), self.ceiling)

@@ -26,7 +26,8 @@ class EddyField:
     heat : (n,) [W/m3] ; power : [W] absorbed by this workpiece (= sum of heat x volume) ;
     impedance : [ohm] workpiece and air space reflected at the coil terminals, coil copper left out
     (0 where there is no coil) ; H_surface_rms : [A/m] ; mu_r : (n,) [-] as used in the cells ;
-    solves : field solves it took.
+    solves : field solves it took ; fall : (n,) [W/(m3 K)] how much the heat of a cell falls with its own temperature as
+    its permeability goes, a rough figure of zero or more for the matrix of a step; None for zero.
     """
 
     heat: Array
@@ -35,6 +36,7 @@ class EddyField:
     H_surface_rms: float
     mu_r: Array
     solves: int
+    fall: Array | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -16,10 +16,13 @@ from thermal.results.history import History, StageRecord, Status
 from thermal.results.recorder import Recorder, State
 from thermal.schedule import Stage
 from thermal.setup import Setup
-from thermal.stepper import LANDING, Hottest, Moment, Stepper, account_names
+from thermal.stepper import LANDING, SURFACES, Hottest, Moment, Stepper, account_names
 
 SETTLED = 1e-3
 """Net heat below this share of what is absorbed counts as settled."""
+
+HOPELESS = 1e3
+"""A target so many times farther off than the stage has taken is out of reach."""
 
 
 def march(setup: Setup) -> Iterator[State]:
@@ -44,7 +47,7 @@ def _march_stage(setup: Setup, number: int, stage: Stage, book: "_Book") -> Iter
         ceiling = max(book.hottest.surfaces["outer"], stage.control.set_point)
         stage = replace(stage, control=replace(stage.control, ceiling=ceiling))
     stepper = Stepper(setup, stage, book.hottest)
-    watch = _Watch(stage)
+    watch = _Watch(stage, stepper.accounts)
     begun = book.clock
     end_time = math.inf if stage.longest is None else begun + stage.longest
 
@@ -53,7 +56,9 @@ def _march_stage(setup: Setup, number: int, stage: Stage, book: "_Book") -> Iter
         room = setup.T_end - at.readings["maximum"]
         return min(room, stage.stop.distance(at.readings)) if stage.stop else room
 
-    now = stepper.moment(book.H, np.zeros(1), book.recent)
+    now = stepper.moment(book.H, np.zeros(2), book.recent)
+    if book.clock == 0.0:
+        now = stepper.untouched(now)
     if stage.stop and stage.stop.distance(now.readings) <= 0.0:
         yield book.state(number, stepper, now, 0.0, watch.record(begun, begun, "already there", met=True))
         return
@@ -84,7 +89,11 @@ def _march_stage(setup: Setup, number: int, stage: Stage, book: "_Book") -> Iter
             # A transfer may end before its targets; a heating stage that does has failed them.
             met = stage.stop is None or stage.kind != "heat"
             record = watch.record(begun, book.clock, "time", met=met)
-        elif stage.kind == "heat" and stage.stop is not None and watch.settled(end, length, distance(end)):
+        elif (
+            stage.kind == "heat"
+            and stage.stop is not None
+            and watch.settled(taken.gained, length, far, book.clock - begun)
+        ):
             record = watch.record(begun, book.clock, "settled", met=False)
             book.over = True
         now = end
@@ -98,7 +107,7 @@ class _Book:
         mesh = setup.section.mesh
         self.H = setup.section.table.enthalpy(np.full(mesh.volume.size, setup.T_initial))
         self.clock = 0.0
-        surfaces = {name: setup.T_initial for name in mesh.faces if name != "ends"}
+        surfaces = {name: setup.T_initial for name in mesh.faces if name in SURFACES}
         self.hottest = Hottest(surfaces, np.full(mesh.volume.size, setup.T_initial))
         self.recent: tuple[OperatingPoint, EddyField] | None = None
         self.over = False
@@ -112,7 +121,7 @@ class _Book:
         self._gained = self._gained + gained
         self.clock = clock
         self.H = end.H
-        self.hottest.see(end.faces)
+        self.hottest.see(end.faces, end.extended[1:-1])
         if end.field.power > 0.0:
             self.recent = (end.point, end.field)
 
@@ -153,8 +162,9 @@ class _Book:
 class _Watch:
     """Keeps book of limits and notices when a stage gets no further."""
 
-    def __init__(self, stage: Stage) -> None:
+    def __init__(self, stage: Stage, accounts: list[str]) -> None:
         self.stage = stage
+        self._losses = [i for i, name in enumerate(accounts) if name.startswith("loss: ")]
         self.limits: dict[str, list[tuple[float, float]]] = {}
         self._approach: float | None = None
         self._distance: float | None = None
@@ -169,21 +179,23 @@ class _Watch:
         else:
             spans.append((start, end))
 
-    def settled(self, now: Moment, step: float, distance: float) -> bool:
+    def settled(self, gained: Array, step: float, distance: float, elapsed: float) -> bool:
         """Whether the workpiece has come to rest short of its target.
 
-        Net heat must be below 0.1 % of what is absorbed, and the approach to the target must die out before it gets
-        there if it goes on slowing down as it did over the last two steps.
+        Over the step, net heat must be below 0.1 % of what is absorbed, and the approach to the target must die out
+        before it gets there if it goes on slowing down as it did over the last two steps, or would take a thousand
+        times as long as the stage has taken so far.
+
+        gained : (p,) [J] of the energy accounts over the step ; distance : [K] ; elapsed : [s] since the stage began.
         """
-        absorbed = now.field.power
-        lost = sum(float(np.sum(loss)) for face in now.faces.values() for loss in face.loss)
+        absorbed, lost = float(gained[0]), float(gained[self._losses].sum())
         earlier, self._distance = self._distance, distance
         last, self._approach = self._approach, None if earlier is None else (earlier - distance) / step
         if abs(absorbed - lost) > SETTLED * max(absorbed, lost):
             return False
         if last is None or self._approach is None:
             return False
-        if self._approach <= 0.0:
+        if self._approach * HOPELESS * elapsed <= distance:
             return True
         if self._approach >= last:
             return False
@@ -245,7 +257,8 @@ def run(setup: Setup, on_state: Callable[[State], None] | None = None) -> Histor
         rejected=rejected,
         wall_s=time.perf_counter() - began,
     )
-    demand_closure(history.energy)
+    volume = setup.section.mesh.volume
+    demand_closure(history.energy, float(np.abs(history.enthalpy[[0, -1]] @ volume).max()))
     return history
 
 

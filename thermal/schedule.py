@@ -4,6 +4,7 @@ from dataclasses import dataclass
 from typing import Literal
 
 from thermal.control import Control
+from thermal.interfaces import Supply
 
 Place = Literal["coil", "open"]
 
@@ -34,7 +35,8 @@ class Stage:
     """One stage.
 
     kind ; control : what it asks of the supply ; place : in the coil or in the open ; stop : targets or None ;
-    longest : [s] after which it ends whatever holds (its duration where there is no stop), None without bound.
+    longest : [s] after which it ends whatever holds (its duration where there is no stop), None without bound ;
+    supply : what drives this stage, where that is not the supply of the run.
     """
 
     kind: Literal["heat", "hold", "transfer"]
@@ -42,3 +44,4 @@ class Stage:
     place: Place
     stop: Stop | None
     longest: float | None
+    supply: Supply | None = None

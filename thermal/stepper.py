@@ -10,7 +10,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from thermal.conduction.assemble import FaceState
-from thermal.conduction.step import Feedback, Matrix, Rates, Step, rosenbrock_step
+from thermal.conduction.step import Fading, Feedback, Matrix, Rates, Step, rosenbrock_step
 from thermal.constants import ZERO_CELSIUS
 from thermal.errors import NoConvergence, OutOfRange
 from thermal.interfaces import Array, EddyField, OperatingPoint
@@ -27,24 +27,25 @@ LANDING = 1e-3
 
 ELECTRICAL = ("supply", "coil", "tank")
 
+SURFACES = ("outer", "bore")
+"""Faces of one cell, with a surface temperature of their own; end faces and edges show that of every cell."""
+
 
 @dataclass
 class Hottest:
     """How hot the faces have been [K], for surfaces that keep their oxide.
 
-    surfaces : outer (and bore) -> [K] ; ends : (n,).
+    surfaces : outer (and bore) -> [K] ; cells : (n,), as the end faces and edges show them.
     """
 
     surfaces: dict[str, float]
-    ends: Array
+    cells: Array
 
-    def see(self, faces: dict[str, FaceState]) -> None:
-        """Take over the temperatures of an accepted step."""
-        for name, face in faces.items():
-            if isinstance(face.T_surface, float):
-                self.surfaces[name] = max(self.surfaces[name], face.T_surface)
-            else:
-                self.ends = np.maximum(self.ends, face.T_surface)
+    def see(self, faces: dict[str, FaceState], T: Array) -> None:
+        """Take over the temperatures of an accepted step; T (n,) [K] of the cells."""
+        for name in self.surfaces:
+            self.surfaces[name] = max(self.surfaces[name], float(faces[name].T_surface))
+        self.cells = np.maximum(self.cells, T)
 
 
 @dataclass(frozen=True, slots=True)
@@ -89,12 +90,13 @@ class Stepper:
         self.setup = setup
         self.stage = stage
         self.hottest = hottest
+        self._supply = stage.supply if stage.supply is not None else setup.supply
         self.accounts = account_names(setup)
         # End faces that lose nothing need no evaluation; the outer surface and the bore have a temperature to find.
         self._faces = [
             (name, losses, [self.accounts.index(loss_account(name, loss.name)) for loss in losses])
             for name, losses in setup.losses[stage.place].items()
-            if losses or name != "ends"
+            if losses or name in SURFACES
         ]
         self._volume = setup.section.mesh.volume
         n = self._volume.size
@@ -116,10 +118,17 @@ class Stepper:
         assert here.dT_dH is not None
         clipped = point is self._idle_point or point.limit is not None
         feedback = None if clipped else self._feedback(here.dT_dH, field, rates.accounts)
-        matrix = Matrix(here.conductance, here.dT_dH, tuple(here.slopes), feedback)
+        fading = self._fading(here.dT_dH, field, rates.accounts)
+        matrix = Matrix(here.conductance, here.dT_dH, tuple(here.slopes), feedback, fading)
         if trend is None:
             trend = rates.heat_flow / self._volume
         return Moment(H, extended, readings, memory, here.faces, field, point, rates, matrix, trend)
+
+    def untouched(self, moment: Moment) -> Moment:
+        """The moment before anything has flowed: the surface as warm as the cell behind it."""
+        T = moment.extended[1:-1]
+        extended = self.setup.sampler.extended(T, float(T[-1]), float(T[0]))
+        return replace(moment, extended=extended, readings=self._readings(extended))
 
     def _conduct(self, H: Array, with_slopes: bool) -> _Conduction:
         section = self.setup.section
@@ -134,8 +143,8 @@ class Stepper:
         here = _Conduction(T, conductance, net, np.zeros(len(self.accounts)), 0.0, {}, dT_dH, [])
         for name, losses, rows in self._faces:
             cells: int | slice
-            if name == "ends":
-                face = section.ends_state(losses, T, dT_dH, self.hottest.ends)
+            if name not in SURFACES:
+                face = section.ends_state(name, losses, T, dT_dH, self.hottest.cells)
                 cells = slice(None)
             else:
                 face = section.surface_state(name, losses, T, k, flow, dT_dH, self.hottest.surfaces[name])
@@ -158,7 +167,7 @@ class Stepper:
         guess: tuple[OperatingPoint, EddyField] | None,
     ) -> tuple[Rates, OperatingPoint, EddyField]:
         setup, control = self.setup, self.stage.control
-        demand = control.demand(readings, here.lost, float(memory[0]))
+        demand = control.demand(readings, here.lost, memory)
         if demand.kind == "off":
             point, field = self._idle_point, self._idle_field
         else:
@@ -170,21 +179,34 @@ class Stepper:
                 return found
 
             usable = guess if guess is not None and guess[1].power > 0.0 else None
-            point, field = setup.supply.operate(field_of, demand, usable)
+            point, field = self._supply.operate(field_of, demand, usable)
         accounts = here.accounts
         accounts[0] = field.power
         if setup.has_coil:
             drawn = (point.supply_power, point.coil_loss, point.tank_loss)
             accounts[1 : 1 + len(ELECTRICAL)] = [setup.share * watts for watts in drawn]
-        clipped = demand.kind == "off" or point.limit is not None
-        memory_rate = np.array([control.memory_rate(readings, clipped)])
-        return Rates(here.heat_flow + self._volume * field.heat, accounts, memory_rate), point, field
+        clipped = -1 if demand.kind == "off" else int(point.limit is not None)
+        memory_rates = control.memory_rates(readings, memory, clipped)
+        return Rates(here.heat_flow + self._volume * field.heat, accounts, memory_rates), point, field
 
     def _extended(self, here: _Conduction) -> Array:
         surface = here.faces["outer"].T_surface
         bore = here.faces["bore"].T_surface if "bore" in here.faces else None
         assert isinstance(surface, float) and not isinstance(bore, np.ndarray)
         return self.setup.sampler.extended(here.T, surface, bore)
+
+    def _per_watt(self, field: EddyField, accounts: Array) -> Array:
+        """What every account gains per watt absorbed."""
+        gains = np.zeros_like(accounts)
+        electrical = 1 + len(ELECTRICAL) if self.setup.has_coil else 1
+        gains[:electrical] = accounts[:electrical] / field.power
+        return gains
+
+    def _fading(self, dT_dH: Array, field: EddyField, accounts: Array) -> Fading | None:
+        """What the source adds to the matrix at the Curie point: without it, steps are as short as that is steep."""
+        if field.fall is None or field.power <= 0.0:
+            return None
+        return Fading(self._volume * field.fall * dT_dH, self._per_watt(field, accounts))
 
     def _feedback(self, dT_dH: Array, field: EddyField, accounts: Array) -> Feedback | None:
         """What the controller adds to the matrix: without it, it would hold the steps to its response time."""
@@ -196,10 +218,8 @@ class Stepper:
         else:
             pull = np.zeros_like(dT_dH)
             pull[-1] = gain * dT_dH[-1]
-        per_watt = np.zeros_like(accounts)
-        electrical = 1 + len(ELECTRICAL) if self.setup.has_coil else 1
-        per_watt[:electrical] = accounts[:electrical] / field.power
-        return Feedback(self._volume * field.heat / field.power, pull, per_watt, reset)
+        share = self._volume * field.heat / field.power
+        return Feedback(share, pull, self._per_watt(field, accounts), reset)
 
     def _readings(self, extended: Array) -> dict[str, float]:
         """Every reading [K] by name."""
@@ -237,7 +257,10 @@ class Stepper:
         dT_dH = np.maximum(here, self.setup.section.table.slope(start.H + step * start.trend))
         ratio = dT_dH / here
         slopes = tuple((row, cells, ratio[cells] * slope) for row, cells, slope in start.matrix.slopes)
-        return replace(start.matrix, dT_dH=dT_dH, slopes=slopes)
+        fading = start.matrix.fading
+        if fading is not None:
+            fading = replace(fading, fall=ratio * fading.fall)
+        return replace(start.matrix, dT_dH=dT_dH, slopes=slopes, fading=fading)
 
     def error_of(self, taken: Step, start: Moment, end: Moment) -> float:
         """Largest embedded error of a step [K] over the tolerance."""

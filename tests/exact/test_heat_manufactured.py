@@ -70,7 +70,7 @@ def marched(made: Setup, steps: int) -> Moment:
     """From the cell values of the solution to TIME in equal steps, without error control."""
     mesh, table = made.section.mesh, made.section.table
     stepper = Stepper(made, made.stages[0], Hottest({"outer": 0.0}, np.zeros(mesh.r.size)))
-    now = stepper.moment(table.enthalpy(solution(mesh.r, 0.0) + ZERO), np.zeros(1), None)
+    now = stepper.moment(table.enthalpy(solution(mesh.r, 0.0) + ZERO), np.zeros(2), None)
     for _ in range(steps):
         _, now = stepper.try_step(now, TIME / steps)
     assert now.memory[0] == pytest.approx(TIME, rel=1e-12)

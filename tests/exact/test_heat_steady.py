@@ -122,5 +122,5 @@ def test_cp_05_core_excess_with_the_real_field(frequency: float, centre: float, 
     assert last_of(history, "core") - surface == pytest.approx(centre, rel=3e-3)
     assert last_of(history, "r/a = 0.5") - surface == pytest.approx(half, rel=3e-3)
     assert last_of(history, "r/a = 0.8") - surface == pytest.approx(outer, rel=3e-3)
-    # What the surface gives off is what the field brings: the surface power of EM-03, rho H0^2/2 (1/delta) Phi.
+    # At rest all that the field brings leaves through the surface.
     assert history.loss_power[-1] == pytest.approx(history.absorbed_power[-1], rel=1e-6)

@@ -65,7 +65,8 @@ def test_every_shape_and_stage(shape: str, lining: bool, neighbours: str) -> Non
     demand_closed(setup, history)
     lost = {name for name, series in history.energy.items() if name.startswith("loss: ") and series[-1] > 0.0}
     expected = {"loss: radiation", "loss: convection", "loss: ends"} | ({"loss: lining"} if lining else set())
-    assert lost == expected | ({"loss: bore"} if shape == "tube" else set())
+    own = {"cylinder": set[str](), "tube": {"loss: bore"}, "plate": {"loss: edges"}}
+    assert lost == expected | own[shape]
 
 
 @pytest.mark.parametrize(
@@ -113,12 +114,17 @@ def test_absorbed_energy_is_the_integral_of_the_power() -> None:
     assert history.energy["absorbed"][-1] == pytest.approx(15e3 * 4.0, rel=2e-6)
 
 
-@pytest.mark.parametrize(("material", "power"), [("aluminium-6082", "20 kW"), ("copper", "60 kW")])
-def test_closes_into_the_melt(material: str, power: str) -> None:
-    # Through the latent heat up to the liquidus, where the run stops and says so. Copper melts within 1 K.
+@pytest.mark.parametrize("tolerance", ["0.3 K", "1 K", "3 K"])
+@pytest.mark.parametrize(
+    ("material", "power"),
+    [("aluminium-6082", "10 kW"), ("aluminium-6082", "20 kW"), ("copper", "10 kW"), ("copper", "60 kW")],
+)
+def test_closes_into_the_melt(material: str, power: str, tolerance: str) -> None:
+    # Through the latent heat up to the liquidus, where the run stops and says so. Copper melts within 1 K: there dT/dH
+    # jumps 400-fold from cell to cell and from step to step.
     end = 'duration = "600 s"'
     setup = setup_of(
-        drive_case("cylinder", f'absorbed_power = "{power}"', "3 kHz", end, material=material, tolerance="1 K")
+        drive_case("cylinder", f'absorbed_power = "{power}"', "3 kHz", end, material=material, tolerance=tolerance)
     )
     history = run(setup)
     assert setup.material.liquidus is not None

@@ -169,9 +169,9 @@ def test_no_heat_is_taken_back() -> None:
 
 @pytest.mark.parametrize("reading", ["core", "TC"])
 def test_a_reading_inside_is_held_through_the_surface(reading: str) -> None:
-    # Its set point for the surface is S + (S - reading), never above the hottest surface so far. Hence the surface
-    # stays below that, and at rest the reading is off by no more than half of its distance from the surface. On the
-    # way the section evens out: what is stored when the supply goes off can not be taken back.
+    # The surface is asked for no more than the hottest it has been. On the way the section evens out: what is stored
+    # when the supply goes off can not be taken back. Then the reading comes to its set point and stays (measured: core
+    # 65 K above after 20 s, within 1 K after 350 s, 0.15 K off after 600 s; TC 7 K above at most).
     set_point = 1000.0
     history = held(reading, set_point, "30 kW", duration="600 s")
     hold = history.stage == 1
@@ -181,7 +181,6 @@ def test_a_reading_inside_is_held_through_the_surface(reading: str) -> None:
     lag = history.readings["surface"][~hold][-1] - history.readings[reading][~hold][-1]
     assert off.min() >= -0.1 * lag
     assert off.max() <= lag
-    apart = np.abs(history.readings[reading][hold] - history.readings["surface"][hold])
-    late = time >= 200.0
-    assert np.all(np.abs(off[late]) <= 0.5 * apart[late] + 0.5)
+    assert np.abs(off[time >= 400.0]).max() <= 1.0
+    assert abs(off[-1]) <= 0.3
     assert sign_changes(off) <= 2

@@ -70,10 +70,10 @@ def _workpiece(case: Case, material: Material) -> Iterator[Problem]:
     if state is not None and state not in material.surfaces:
         known = ", ".join(material.surfaces)
         hits = difflib.get_close_matches(state, list(material.surfaces), n=1)
-        hint = f"did you mean '{hits[0]}'? " if hits else ""
+        hint = f", did you mean '{hits[0]}'?" if hits else ""
         yield (
             ("workpiece", "surface"),
-            f"{material.key} has no surface state '{state}', {hint}(it has: {known}; or give emissivity)",
+            f"{material.key} has no surface state '{state}'{hint} (it has: {known}; or give emissivity)",
         )
     initial = case.workpiece.initial
     lowest = float(material.caloric.T_nodes[0])

@@ -3,6 +3,8 @@
 from dataclasses import dataclass
 from typing import Any
 
+from thermal.case.naming import stages_in_words
+
 COMMON_PRACTICE = "common practice"
 ASSUMPTION = "assumption"
 
@@ -25,8 +27,8 @@ class Default:
     unless: tuple[str, ...] = ()
 
     def line(self, path: str) -> str:
-        """The sentence for the list of assumptions."""
-        return f"{path}.{self.key} = {self.words or self.value} ({self.kind}: {self.reason})"
+        """The sentence for the list of assumptions; path: "lining." or "schedule.1 (hold): "."""
+        return f"{path}{self.key} = {self.words or self.value} ({self.kind}: {self.reason})"
 
 
 DEFAULTS = (
@@ -80,15 +82,15 @@ def filled(document: dict[str, Any]) -> tuple[dict[str, Any], tuple[str, ...]]:
     for name in dict.fromkeys(default.table for default in DEFAULTS):
         if isinstance(full.get(name), dict):
             full[name] = _completed(
-                full[name], name, tuple(default for default in DEFAULTS if default.table == name), lines
+                full[name], f"{name}.", tuple(default for default in DEFAULTS if default.table == name), lines
             )
     stages = full.get("schedule")
     if isinstance(stages, list):
         full["schedule"] = [
-            _completed(stage, f"schedule.{index}", HOLD_DEFAULTS, lines)
+            _completed(stage, f"schedule.{index} ({name}): ", HOLD_DEFAULTS, lines)
             if isinstance(stage, dict) and stage.get("stage") == "hold"
             else stage
-            for index, stage in enumerate(stages)
+            for index, (stage, name) in enumerate(zip(stages, stages_in_words(full), strict=True))
         ]
     return full, tuple(lines)
 

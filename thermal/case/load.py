@@ -15,10 +15,15 @@ from thermal.case.checks import check_sections
 from thermal.case.defaults import filled
 from thermal.case.locate import Path as Where
 from thermal.case.locate import lines_of
-from thermal.case.problems import Places, problems_of
+from thermal.case.naming import stages_in_words
+from thermal.case.problems import Places, brackets, problems_of
 from thermal.case.schema import CaseFile
 from thermal.case.write import to_toml
 from thermal.errors import CaseError
+
+LISTS = ("schedule", "reading")
+"""Tables there may be several of."""
+QUOTES = "\"'"
 
 _NOTHING: Mapping[str, object] = {}
 
@@ -74,12 +79,12 @@ def from_text(text: str, folder: str | Path, overrides: Mapping[str, object] = _
         There are mistakes in it; all of them at once.
     """
     document, paths = _with_overrides(_parsed(text), overrides)
-    places = Places(lines_of(text), paths)
     full, taken = filled(document)
+    places = Places(lines_of(text), paths, stages_in_words(full))
     try:
         sections = CaseFile.model_validate(full)
     except ValidationError as error:
-        raise CaseError(*places.finished(problems_of(error, full))) from None
+        raise CaseError(*places.finished(problems_of(error, full), _mistakes_of_file(text, folder, paths))) from None
     case = Case(
         name=name,
         folder=Path(folder),
@@ -100,7 +105,7 @@ def from_text(text: str, folder: str | Path, overrides: Mapping[str, object] = _
     )
     problems = [*check_sections(sections), *check_against_materials(case)]
     if problems:
-        raise CaseError(*places.finished(problems))
+        raise CaseError(*places.finished(problems, _mistakes_of_file(text, folder, paths)))
     return case
 
 
@@ -130,6 +135,16 @@ def as_run(case: Case) -> str:
     return to_toml(document)
 
 
+def _mistakes_of_file(text: str, folder: str | Path, paths: tuple[Where, ...]) -> tuple[str, ...]:
+    """Mistakes there are without the overrides; none are looked for where nothing was overridden."""
+    if paths:
+        try:
+            from_text(text, folder)
+        except CaseError as error:
+            return error.problems
+    return ()
+
+
 def _parsed(text: str) -> dict[str, Any]:
     try:
         return tomllib.loads(text)
@@ -143,13 +158,27 @@ def _broken(text: str, message: str) -> str:
     lines = text.split("\n")
     number = int(found.group(2)) if found else len(lines)
     reason = found.group(1) if found else message.removesuffix(" (at end of document)")
+    second = re.fullmatch(r"Cannot declare \('(\w+)',\) twice", reason)
+    open_quotes = [n for n, line in enumerate(lines, 1) if _has_open_quote(line)]
     unquoted = re.match(r"\s*([\w.-]+)\s*=\s*([^\s\"'\[{#][^#]*?)\s*(#.*)?$", lines[number - 1])
     where = f"{f'line {number}':<9}"
+    if second:
+        name = second.group(1)
+        return where + (brackets(name) if name in LISTS else f"the table [{name}] is given a second time")
+    if reason == "Cannot overwrite a value" and lines[number - 1].lstrip().startswith("[["):
+        return f"{where}write every one of them with two brackets: {lines[number - 1].strip()}"
     if unquoted and reason != "Cannot overwrite a value":
-        return f'{where}{unquoted.group(1)}: put the value in quotes: "{unquoted.group(2)}"'
+        return f'{where}{unquoted.group(1)}: put the value in quotes: "{unquoted.group(2).rstrip(QUOTES)}"'
+    if number in open_quotes or (open_quotes and "at end of document" in message):
+        number = number if number in open_quotes else open_quotes[0]
+        return f"{f'line {number}':<9}a closing quote is missing: {lines[number - 1].strip()}"
     if reason == "Cannot overwrite a value":
         return f"{where}this key is given a second time: {lines[number - 1].strip()}"
     return f"{where}this is not TOML: {reason[:1].lower()}{reason[1:]}"
+
+
+def _has_open_quote(line: str) -> bool:
+    return line.count('"') % 2 == 1 or ('"' not in line and line.count("'") % 2 == 1)
 
 
 def _with_overrides(

@@ -28,6 +28,8 @@ _TABLES: dict[str, type[BaseModel]] = {
     "numerics": schema.NumericsSection,
     "output": schema.OutputSection,
 }
+_OTHER_WORDS = {"soak": "hold", "dwell": "hold"}
+"""What others call a stage."""
 _EXAMPLES = {
     "format": "format = 1",
     "workpiece": "a [workpiece] table",
@@ -63,23 +65,40 @@ class Places:
     ----------
     lines : path -> line of the file.
     overridden : paths that were set from outside the file.
+    stages : what the stages are called.
     """
 
-    def __init__(self, lines: dict[Path, int], overridden: tuple[Path, ...]) -> None:
+    def __init__(self, lines: dict[Path, int], overridden: tuple[Path, ...], stages: tuple[str, ...]) -> None:
         self._lines = lines
         self._overridden = overridden
+        self._stages = stages
 
-    def finished(self, problems: list[Problem]) -> list[str]:
-        """Lines like "line 7   workpiece.diameter: ...", overrides first, then in the order of the file."""
-        return [line for _, line in sorted(map(self._finished, problems), key=lambda entry: entry[0])]
+    def finished(self, problems: list[Problem], of_file: tuple[str, ...]) -> list[str]:
+        """Lines like "line 7   workpiece.diameter: ...", overrides first, then in the order of the file.
 
-    def _finished(self, problem: Problem) -> tuple[int, str]:
+        of_file : lines of the mistakes there are without the overrides.
+        """
+        found = [self._finished(problem, of_file) for problem in problems]
+        return [line for _, line in sorted(found, key=lambda entry: entry[0])]
+
+    def _finished(self, problem: Problem, of_file: tuple[str, ...]) -> tuple[int, str]:
         path, sentence = problem
-        text = f"{'.'.join(str(part) for part in path)}: {sentence}"
-        if any(path[: len(over)] == over for over in self._overridden):
-            return 0, f"{'--set':<9}{text}"
+        text = f"{'.'.join(str(part) for part in path)}{self._stage(path)}: {sentence}"
         line = line_of(path, self._lines)
-        return (_LAST, text) if line is None else (line, f"{f'line {line}':<9}{text}")
+        told = text if line is None else f"{f'line {line}':<9}{text}"
+        # A table with a value set in it may be wrong because of that value, or have been wrong before.
+        inside = told not in of_file and any(over[: len(path)] == path for over in self._overridden)
+        if inside or any(path[: len(over)] == over for over in self._overridden):
+            return 0, f"{'--set':<9}{text}"
+        return (_LAST if line is None else line), told
+
+    def _stage(self, path: Path) -> str:
+        """Name of the stage a path leads into, in brackets."""
+        match path:
+            case ("schedule", int(index), *_) if self._stages[index]:
+                return f" ({self._stages[index]})"
+            case _:
+                return ""
 
 
 def near(word: str, known: list[str]) -> str:
@@ -135,21 +154,36 @@ def _translated(details: ErrorDetails, document: dict[str, Any]) -> Problem:
             tag = context["discriminator"].strip("'")
             known = list(_SHAPES if tag == "shape" else _STAGES)
             if not isinstance(value, dict):
-                return path, f"'{value}' is not a table of keys"
+                return path, f"{_read(value)} is not a table of keys"
             if tag not in value:
                 return (*path, tag), _missing((*path, tag))
-            return (*path, tag), f"'{value[tag]}' is not a {tag}, {near(str(value[tag]), known)}"
+            word = str(value[tag]).casefold()
+            return (*path, tag), f"{_read(value[tag])} is not a {tag}, {near(_OTHER_WORDS.get(word, word), known)}"
         case "literal_error":
             accepted = context["expected"].replace("'", "").replace(" or ", ", ")
-            return path, f"'{value}' is not accepted (accepted: {accepted})"
+            return path, f"{_read(value)} is not accepted (accepted: {accepted})"
         case "model_type" | "model_attributes_type" | "dict_type":
-            return path, f"'{value}' is not a table of keys"
+            return path, f"{_read(value)} is not a table of keys"
         case "tuple_type":
-            return path, f"'{value}' is not a list" + (", write [[...]]" if len(path) == 1 else "")
+            if len(path) == 1 and isinstance(value, dict):
+                return path, brackets(str(path[0]))
+            return path, f"{_read(value)} is not a list" + (f", {brackets(str(path[0]))}" if len(path) == 1 else "")
         case "string_type":
-            return path, f"'{value}' is not a text, put it in quotes"
+            return path, f"{_read(value)} is not a text, put it in quotes"
         case _:
             return path, details["msg"]
+
+
+def _read(value: object) -> str:
+    """A value of the file in a sentence."""
+    if isinstance(value, dict):
+        return "a table"
+    return "a list" if isinstance(value, list) else f"'{value}'"
+
+
+def brackets(name: str) -> str:
+    """How a list of tables is written."""
+    return f"write [[{name}]] with two brackets"
 
 
 def _without_tags(loc: tuple[int | str, ...]) -> Path:

@@ -9,7 +9,8 @@ from thermal.errors import NoConvergence
 from thermal.interfaces import Demand, EddyField, FieldOf, Limit, OperatingPoint
 
 TOLERANCE = 1e-6
-TRIES_AT_MOST = 40
+TRIES_AT_MOST = 60
+STEEPEST = 8.0
 
 
 @dataclass(frozen=True, slots=True)
@@ -23,32 +24,38 @@ class Trial:
 
 
 def excitation_for(try_at: Callable[[float, EddyField | None], Trial], start: float, field: EddyField | None) -> Trial:
-    """The excitation whose reach is 1, by the secant rule on logarithms.
+    """The excitation whose reach is 1, on logarithms.
 
-    Every demand and every limit is written as a reach that rises with the excitation, about in proportion (power as
-    its square root), so the largest of them decides and one root finds both the operating point and what binds.
+    Every demand and every limit is written as a reach that rises with the excitation (power as its square root), most
+    often in proportion, so the largest of them decides and one root finds both the operating point and what binds.
+    Secant rule, kept within its bracket.
 
     Raises
     ------
-    NoConvergence : after 40 trials.
+    NoConvergence : after 60 trials.
     """
-    excitation = start
-    slope = 1.0
+    here = math.log(start)
+    low, high = -math.inf, math.inf
     before: tuple[float, float] | None = None
+    slope = 1.0
     for _ in range(TRIES_AT_MOST):
-        trial = try_at(excitation, field)
+        trial = try_at(math.exp(here), field)
         if not (math.isfinite(trial.reach) and trial.reach > 0.0):
             break
         off = math.log(trial.reach)
         if abs(off) < TOLERANCE:
             return trial
-        here = math.log(excitation)
+        low, high = (here, high) if off < 0.0 else (low, here)
         if before is not None and here != before[0]:
-            slope = min(max((off - before[1]) / (here - before[0]), 0.3), 2.0)
+            slope = min(max((off - before[1]) / (here - before[0]), 0.3), STEEPEST)
+        slower = before is not None and abs(off) > 0.5 * abs(before[1])
         before = (here, off)
-        excitation = math.exp(here - off / slope)
+        here -= off / slope
+        if math.isfinite(high - low) and (slower or not low < here < high):
+            # The secant has left the bracket or hardly helps: iron that saturates makes the reach steep.
+            here = 0.5 * (low + high)
         field = trial.field
-    raise NoConvergence(f"no operating point found near an excitation of {excitation:.4g}")
+    raise NoConvergence(f"no operating point found near an excitation of {math.exp(here):.4g}")
 
 
 def decide(own: float, limits: list[tuple[float, Limit]]) -> tuple[float, Limit | None]:

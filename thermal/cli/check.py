@@ -5,15 +5,16 @@ from typing import Annotated
 
 import typer
 
-from thermal.cli.exits import exit_codes
+from thermal.cli.changes import Changes, overrides
+from thermal.cli.exits import exit_codes, say
 
 
-def check(case: Annotated[Path, typer.Argument(help="Case file (TOML).")]) -> None:
+def check(case: Annotated[Path, typer.Argument(help="Case file (TOML).")], changes: Changes = None) -> None:
     """Check a case without running it: assumptions, skin depths, mesh and field."""
     with exit_codes():
         from thermal.build import build
         from thermal.case import load_case
         from thermal.report.plan import plan_text
 
-        loaded = load_case(case)
-        print(plan_text(build(loaded), loaded), end="")
+        loaded = load_case(case, overrides(changes))
+        say(plan_text(build(loaded), loaded))

@@ -1,5 +1,6 @@
 """How a command ends: exit codes, and one clean message instead of a traceback."""
 
+import os
 import sys
 from collections.abc import Iterator
 from contextlib import contextmanager
@@ -25,6 +26,29 @@ def exit_codes() -> Iterator[None]:
             raise _told(str(error), BAD_INPUT) from None
     except KeyboardInterrupt:
         raise _told("interrupted, nothing was written", INTERRUPTED) from None
+
+
+def say(text: str) -> None:
+    """Print an answer; a reader that stops reading early is no error.
+
+    Raises
+    ------
+    typer.Exit : it cannot be printed, code 2.
+    """
+    try:
+        print(text, end="", flush=True)
+    except BrokenPipeError:
+        drop_output()
+    except OSError as error:
+        drop_output()
+        raise _told(f"the answer cannot be printed ({error.strerror})", BAD_INPUT) from None
+
+
+def drop_output() -> None:
+    """Send what is still to be printed nowhere, or the end of the process would try and fail again."""
+    nowhere = os.open(os.devnull, os.O_WRONLY)
+    os.dup2(nowhere, sys.stdout.fileno())
+    os.close(nowhere)
 
 
 def _told(message: str, code: int) -> typer.Exit:

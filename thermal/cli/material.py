@@ -5,7 +5,7 @@ from typing import Annotated
 
 import typer
 
-from thermal.cli.exits import exit_codes
+from thermal.cli.exits import exit_codes, say
 
 app = typer.Typer(
     help="Materials there are, and where their numbers come from.",
@@ -28,9 +28,9 @@ def list_materials(as_json: AsJson = False) -> None:
 
         found = [get(name) for name in names()]
         if as_json:
-            print(json.dumps([material_entry(each) for each in found], indent=2, ensure_ascii=False))
+            say(json.dumps([material_entry(each) for each in found], indent=2, ensure_ascii=False) + "\n")
         else:
-            print(material_list_text(found), end="")
+            say(material_list_text(found))
 
 
 @app.command()
@@ -48,6 +48,6 @@ def show(
 
         material = load_file(Path(name)) if name.endswith(".toml") else get(name)
         if as_json:
-            print(json.dumps(material_json(material), indent=2, ensure_ascii=False))
+            say(json.dumps(material_json(material), indent=2, ensure_ascii=False) + "\n")
         else:
-            print(material_text(material), end="")
+            say(material_text(material))

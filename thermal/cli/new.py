@@ -5,7 +5,7 @@ from typing import Annotated
 
 import typer
 
-from thermal.cli.exits import exit_codes
+from thermal.cli.exits import exit_codes, say
 
 
 def new(
@@ -19,7 +19,7 @@ def new(
 
         text = starter(kind)
         if file is None:
-            print(text, end="")
+            say(text)
             return
         try:
             with file.open("x", encoding="utf-8", newline="\n") as target:

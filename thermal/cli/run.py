@@ -6,7 +6,8 @@ from typing import Annotated
 
 import typer
 
-from thermal.cli.exits import INTERRUPTED, NOT_REACHED, exit_codes
+from thermal.cli.changes import Changes, overrides
+from thermal.cli.exits import INTERRUPTED, NOT_REACHED, exit_codes, say
 
 CODES = {"cannot_reach": NOT_REACHED, "limit": NOT_REACHED, "interrupted": INTERRUPTED}
 """Exit codes of the ways a run can end; 0 for the others."""
@@ -15,10 +16,7 @@ CODES = {"cannot_reach": NOT_REACHED, "limit": NOT_REACHED, "interrupted": INTER
 def run(
     case: Annotated[Path, typer.Argument(help="Case file (TOML).")],
     out: Annotated[Path | None, typer.Option(help="Folder for the results; results/<case name> if left out.")] = None,
-    changes: Annotated[
-        list[str] | None,
-        typer.Option("--set", metavar="PATH=VALUE", help='Change a value, such as supply.power="80 kW".'),
-    ] = None,
+    changes: Changes = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print the summary as JSON.")] = False,
     quiet: Annotated[bool, typer.Option("--quiet", help="Print the verdict only, no progress.")] = False,
     force: Annotated[bool, typer.Option("--force", help="Replace results that are there.")] = False,
@@ -36,7 +34,7 @@ def run(
         from thermal.report.files import demand_place, write_results
         from thermal.results.stages import stage_names
 
-        loaded = load_case(case, overrides(changes or []))
+        loaded = load_case(case, overrides(changes))
         folder = out if out is not None else Path("results") / loaded.name
         demand_place(folder, force)
         setup = build(loaded)
@@ -55,31 +53,13 @@ def run(
             if as_json:
                 from thermal.report.summary import summary_text
 
-                print(summary_text(setup, loaded, history), end="")
+                say(summary_text(setup, loaded, history))
             elif quiet:
                 from thermal.results.verdict import sentence
 
-                print(sentence(setup, history))
+                say(f"{sentence(setup, history)}\n")
             else:
                 from thermal.report.tables import result_text
 
-                print(result_text(setup, loaded, history, written), end="")
+                say(result_text(setup, loaded, history, written))
         raise typer.Exit(CODES.get(history.status, 0))
-
-
-def overrides(changes: list[str]) -> dict[str, object]:
-    """Dotted path -> value of every --set.
-
-    Raises
-    ------
-    CaseError : a change is not path=value.
-    """
-    from thermal.errors import CaseError
-
-    found: dict[str, object] = {}
-    for change in changes:
-        path, equals, value = change.partition("=")
-        if not (equals and path.strip() and value.strip()):
-            raise CaseError(f"--set    '{change}' is not path=value, write for example supply.power=\"80 kW\"")
-        found[path.strip()] = value.strip()
-    return found

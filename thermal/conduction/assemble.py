@@ -123,9 +123,11 @@ class Section:
         per_enthalpy = area * float(dT_dH[cell]) / (1.0 + stiffness * sum(dq for _, dq in fluxes))
         return FaceState(surface, watts, tuple(dq * per_enthalpy for _, dq in fluxes))
 
-    def ends_state(self, losses: tuple[BoundaryLoss, ...], T: Array, dT_dH: Array | None, T_peak: Array) -> FaceState:
-        """Losses of the end faces, every ring at its own temperature."""
-        area = self.mesh.faces["ends"].area
+    def ends_state(
+        self, name: str, losses: tuple[BoundaryLoss, ...], T: Array, dT_dH: Array | None, T_peak: Array
+    ) -> FaceState:
+        """Losses of the end faces or edges, every cell showing its own temperature."""
+        area = self.mesh.faces[name].area
         fluxes = [loss.flux(T, T_peak) for loss in losses]
         slope = () if dT_dH is None else tuple(dq * (area * dT_dH) for _, dq in fluxes)
         return FaceState(T, tuple(q * area for q, _ in fluxes), slope)

@@ -51,7 +51,7 @@ class Rates:
 
 @dataclass(frozen=True, slots=True)
 class Feedback:
-    """A controller that answers the state with power P, and whose memory J, part of P, is the only further unknown.
+    """A controller that answers with power P; its memory J, part of P, is the last of the further unknowns.
 
     d(heat_flow) = share x dP, dP = dJ - pull dH and d(dJ/dt) = -pull dH/reset. share : (n,) of the power each cell
     gets, adding up to 1 ; pull : (n,) [W m3/J] ; accounts : (p,) what every account gains per watt ; reset : [s].
@@ -64,17 +64,29 @@ class Feedback:
 
 
 @dataclass(frozen=True, slots=True)
+class Fading:
+    """A source that fades where the workpiece warms: d(heat_flow)/dH = -fall in every cell.
+
+    fall : (n,) [W m3/J] ; accounts : (p,) what every account gains per watt of it.
+    """
+
+    fall: Array
+    accounts: Array
+
+
+@dataclass(frozen=True, slots=True)
 class Matrix:
-    """The approximate Jacobian of heat_flow: V d/dt -> -(K dT/dH + loss slopes), frozen at the start of the step.
+    """The approximate Jacobian of heat_flow: V d/dt -> -(K dT/dH + slopes of losses and source), frozen at the start.
 
     conductance : (m,) [W/K] ; dT_dH : (n,) ; slopes : per account that depends on the state, its index, the cell
-    (or all) and d(account)/dH [W m3/J] there ; feedback : of a controller, or None.
+    (or all) and d(account)/dH [W m3/J] there ; feedback : of a controller, or None ; fading : of the source, or None.
     """
 
     conductance: Array
     dT_dH: Array
     slopes: tuple[tuple[int, int | slice, float | Array], ...]
     feedback: Feedback | None = None
+    fading: Fading | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -117,6 +129,8 @@ def rosenbrock_step(
     diagonal[1:] -= upper
     for _, cells, slope in matrix.slopes:
         diagonal[cells] += shift * slope
+    if matrix.fading is not None:
+        diagonal += shift * matrix.fading.fall
     factors = dgttrf(lower, diagonal, upper)
     if factors[-1] != 0:
         raise NoConvergence("the heat equations of the section could not be solved (singular matrix)")
@@ -143,7 +157,7 @@ def rosenbrock_step(
         # Further unknowns have no row in the matrix (treated explicitly), unless they are the memory of a feedback.
         k[i, n + p :] = step * here.extra
         if feedback is not None:
-            memory = step * float(here.extra[0]) + carried[-1]
+            memory = step * float(here.extra[-1]) + carried[-1]
             right += (shift * memory) * feedback.share
         solved, info = dgttrs(*lu, right)
         if info != 0:
@@ -151,12 +165,25 @@ def rosenbrock_step(
         if feedback is not None:
             fall = float(feedback.pull @ solved) / yields
             solved = solved - (firmness * fall) * answer
-            memory -= shift / feedback.reset * fall
-            account += (shift * (memory - fall)) * feedback.accounts
-            k[i, -1] = memory - carried[-1]
+            after = memory - shift / feedback.reset * fall
+            account += (shift * (after - fall)) * feedback.accounts
+            k[i, -1] = after - carried[-1]
+            right += (shift * (after - fall - memory)) * feedback.share
+        # What each cell gains, from flows that leave one cell and enter the next: solved itself conserves only to
+        # round-off times the diffusion number, which is large in thin walls of copper.
+        warming = matrix.dT_dH * solved
+        flow = out * (warming[:-1] - warming[1:])
+        right[:-1] -= flow
+        right[1:] += flow
         for index, cells, slope in matrix.slopes:
-            account[index] += shift * float(np.dot(slope, solved[cells]))
-        k[i, :n] = solved - carried[:n]
+            loss = shift * (slope * solved[cells])
+            right[cells] -= loss
+            account[index] += float(np.sum(loss))
+        if matrix.fading is not None:
+            faded = shift * (matrix.fading.fall * solved)
+            right -= faded
+            account -= float(faded.sum()) * matrix.fading.accounts
+        k[i, :n] = right / volume - carried[:n]
         k[i, n : n + p] = account
     gain = _WEIGHTS @ k
     return Step(H + gain[:n], gain[n : n + p], extra + gain[n + p :], _DIFFERENCE @ k[:, :n])

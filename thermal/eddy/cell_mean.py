@@ -10,8 +10,10 @@ import numpy as np
 from thermal.geometry.mesh import Mesh
 from thermal.interfaces import Array, PropertyOf
 
-NARROWEST = 0.05
-"""Half of the smallest span of temperature averaged over [K]."""
+NARROWEST = 1.0
+"""Half of the smallest span of temperature averaged over [K]: composition and grain round the Curie point off by about
+that much (assumption). A sharp drop would also make a piece that rests on it answer the last millikelvin with half of
+its power."""
 
 
 class CellMean:
@@ -34,6 +36,10 @@ class CellMean:
         # Temperature on the faces: straight between the centres, on from there to the outer surface, level to the axis,
         # mid-plane or bore, where next to no heat flows.
         self._weight = half[:-1] / (half[:-1] + half[1:])
+
+    def slope(self, T: Array) -> Array:
+        """Slope (n,) of the mean with all temperatures [1/K], a difference over the narrowest span."""
+        return (self(T + NARROWEST) - self(T - NARROWEST)) / (2.0 * NARROWEST)
 
     def __call__(self, T: Array) -> Array:
         """Mean (n,) at cell temperatures T (n,) [K]."""

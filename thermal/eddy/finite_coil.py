@@ -21,6 +21,11 @@ from thermal.interfaces import EddyField, FieldOf, PropertyOf
 Array = npt.NDArray[np.float64]
 
 
+STEEPNESS = 0.7
+"""Power of mu_r - 1 with which the heat of a cell is taken to go, for the matrix of a step only: a half in a thick
+skin, towards two in a thin piece. Stalls on the Curie point need about this much, and more costs steps on the way."""
+
+
 @dataclass(frozen=True)
 class FluxPath:
     """The coil as the workpiece meets it.
@@ -68,7 +73,6 @@ class SectionSource:
     mesh, resistivity, magnetics : the workpiece.
     solver : of the field, on that mesh or on one with every cell cut into equal parts.
     path : the coil around it, or None where the surface field itself is the excitation.
-    heated_share : length of the workpiece inside the coil over its length; heat is averaged over the whole of it.
     """
 
     mesh: Mesh
@@ -76,7 +80,6 @@ class SectionSource:
     resistivity: PropertyOf
     magnetics: Magnetics
     path: FluxPath | None
-    heated_share: float = 1.0
     _factor: PropertyOf = field(init=False, repr=False)
     _parts: int = field(init=False, repr=False)
 
@@ -99,6 +102,7 @@ class SectionSource:
         # A section without permeability left responds in proportion: one solve serves every excitation.
         proportional = self.magnetics.linear or not factor.any()
         known: dict[float, Profile] = {}
+        losing = None if proportional else self._losing(T, factor)
 
         def field_of(excitation: float, frequency: float, guess: EddyField | None) -> EddyField:
             if proportional and frequency in known:
@@ -118,17 +122,29 @@ class SectionSource:
                     start,
                 )
                 known[frequency] = profile
-            heat = profile.heat * (H_surface**2 * self.heated_share)
-            if self._parts > 1:
-                watts = heat * self.solver.mesh.volume
-                heat = watts.reshape(-1, self._parts).sum(axis=1) / self.mesh.volume
+            heat = profile.heat * H_surface**2
+            fall = None if losing is None else self._gathered(STEEPNESS * heat * (1.0 - 1.0 / profile.mu_r) * losing)
+            heat = self._gathered(heat)
             power = float(heat @ self.mesh.volume)
             if not math.isfinite(power):
                 raise NoConvergence("the field in the workpiece is not a number")
             at_terminals = self.path.coil_impedance(profile.impedance, frequency) if self.path else 0j
-            return EddyField(heat, power, at_terminals, H_surface, profile.mu_r, solves)
+            return EddyField(heat, power, at_terminals, H_surface, profile.mu_r, solves, fall)
 
         return field_of
+
+    def _losing(self, T: Array, factor: Array) -> Array | None:
+        """Relative fall of the susceptibility with temperature [1/K] in the solver's cells, where it falls."""
+        if not isinstance(self._factor, CellMean):
+            return None
+        return np.maximum(-self._factor.slope(T), 0.0) / np.maximum(factor, 1e-3)
+
+    def _gathered(self, density: Array) -> Array:
+        """A density (per volume) of the solver's cells as that of the cells of the workpiece."""
+        if self._parts == 1:
+            return density
+        whole = (density * self.solver.mesh.volume).reshape(-1, self._parts).sum(axis=1)
+        return np.asarray(whole / self.mesh.volume)
 
     def _surface_field(self, impedance: complex, excitation: float, frequency: float) -> float:
         if self.path is None:

@@ -36,7 +36,7 @@ class Mesh:
     volume : (n,) [m3] of the whole workpiece.
     left, right : (m,) cells on either side of a link; area : (m,) [m2]; gap_left, gap_right : (m,) [m] from the
         cell centres to the shared face.
-    faces : "outer", "ends" and, for a tube, "bore".
+    faces : "outer", "ends"; for a tube "bore", for a plate "edges".
     """
 
     kind: Literal["cylindrical", "planar"]

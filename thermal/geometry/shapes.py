@@ -1,5 +1,7 @@
 """Cylinder, tube and plate as meshes of one cell along the length."""
 
+from dataclasses import replace
+
 import numpy as np
 import numpy.typing as npt
 
@@ -31,11 +33,12 @@ def plate(edges: Array, width: float, length: float) -> Mesh:
     Parameters
     ----------
     edges : (n + 1,) [m] distances of the cell faces from the mid-plane, edges[0] == 0; width, length : [m].
-        Both halves are counted in volumes and areas; "ends" holds the two end faces and the two narrow edges.
+        Both halves are counted in volumes and areas; "edges" are the two narrow faces along the length.
     """
     layer = 2.0 * np.diff(edges)
     areas = np.full(edges.shape, 2.0 * width * length)
-    faces = _radial_faces(edges, areas, ends=2.0 * layer * (width + length))
+    faces = _radial_faces(edges, areas, ends=2.0 * layer * width)
+    faces["edges"] = replace(faces["ends"], area=2.0 * layer * length)
     return _radial_mesh("planar", edges, length, width, layer * width * length, areas, faces)
 
 

@@ -1,5 +1,7 @@
 """What to expect of a result, what limits it, and what to be careful with."""
 
+from typing import NamedTuple
+
 import numpy as np
 
 from thermal.case import Case
@@ -15,6 +17,68 @@ HELD_WITHIN = 5.0
 
 WARM, FUMES, NEAR_MELTING = 60.0 + ZERO_CELSIUS, 200.0 + ZERO_CELSIUS, 100.0
 """Warm enough to burn skin, hot enough for oil and coatings to smoke [K]; margin to the solidus that is close [K]."""
+
+
+class Caution(NamedTuple):
+    """One thing that can hurt people: in one line for the console, and in full."""
+
+    short: str
+    full: str
+
+
+ALWAYS = Caution(
+    "A calculation, no assessment of safety or compliance: local codes and licensed people decide.",
+    "This is a calculation, not an assessment of safety or compliance; local codes and the people licensed for the "
+    "work decide.",
+)
+HOT_METAL = Caution(
+    "Hot metal looks cold below about 500 °C; glowing, it harms the eyes: shields, filter glasses.",
+    "Hot metal: it burns long after it stops glowing, and below about 500 °C it looks cold. Glowing metal gives off "
+    "infrared light that harms the eyes: shields, clothing and filter glasses as local rules ask.",
+)
+COIL_FIELD = Caution(
+    "Coil field: keep pacemakers, insulin pumps, rings, watches away; have the exposure assessed.",
+    "Coil field: keep pacemakers, insulin pumps and other implants, rings and watches out of reach of the field. "
+    "Exposure is for a competent person to assess (guidelines of ICNIRP; in the European Union Directive 2013/35/EU).",
+)
+VOLTAGE = Caution(
+    "Voltage kills, capacitors stay charged: isolate, discharge, prove dead; licensed electricians.",
+    "Voltage: supply, coil, leads and capacitors can kill, and capacitors keep their charge after switching off: "
+    "isolate, discharge, prove dead. Work for licensed electricians under local codes (IEC 60519-1 covers the safety "
+    "of electroheating installations).",
+)
+COOLING_WATER = Caution(
+    "Cooling water: a leak onto hot metal flashes to steam; interlock flow and temperature.",
+    "Cooling water: a leak onto hot metal flashes to steam, and water under a melt explodes. Interlock flow and "
+    "temperature as the maker of the equipment and local codes ask.",
+)
+SMOKE = Caution(
+    "Fumes: oil, paint, scale, coatings smoke; zinc, cadmium, lead are poisonous: clean and extract.",
+    "Fumes: oil, paint, scale and coatings smoke; zinc, cadmium and lead are poisonous. Clean the piece, extract the "
+    "fumes, keep to local workplace limits.",
+)
+FORCE = Caution(
+    "Force: the field pushes light non-magnetic pieces out of the coil: hold them.",
+    "Force: the field pushes light non-magnetic pieces out of the coil; hold them as the maker of the equipment "
+    "prescribes.",
+)
+_MELT = (
+    "Molten metal explodes with water and damp: keep everything under and around the coil dry, and leave melting to a "
+    "plant and people licensed for it."
+)
+MELTING = Caution(
+    "Near melting: the piece can drop, and melt explodes with water and damp; keep everything dry.",
+    f"Near melting: the piece loses its strength and can drop. {_MELT}",
+)
+MELTING_ALUMINIUM = Caution(
+    "Near melting: aluminium runs without changing colour, and melt explodes with water and damp.",
+    f"Near melting: aluminium softens and runs without changing colour. {_MELT}",
+)
+HOLDING = Caution(
+    "Holding: a control that reads wrong heats on: have an independent over-temperature cut-out.",
+    "Holding: a control that reads the wrong temperature heats on without end; have an independent over-temperature "
+    "cut-out as local codes ask.",
+)
 
 
 def expectation(case: Case) -> tuple[str, ...]:
@@ -83,62 +147,22 @@ def _not_held(setup: Setup, history: History) -> list[str]:
     return told
 
 
-def cautions(setup: Setup, history: History) -> tuple[str, ...]:
+def cautions(setup: Setup, history: History) -> tuple[Caution, ...]:
     """What can hurt people in what the case describes; no compliance assessment."""
     hottest = float(np.max(history.readings["maximum"]))
-    material = setup.material
     powered = any(stage.place == "coil" for stage in setup.stages)
-    told = [
-        "This is a calculation, not an assessment of safety or compliance; local codes and the people licensed "
-        "for the work decide."
-    ]
+    told = [ALWAYS]
     if hottest > WARM:
-        told.append(
-            "Hot metal: it burns long after it stops glowing, and below about 500 °C it looks cold. Glowing metal "
-            "gives off infrared light that harms the eyes: shields, clothing and filter glasses as local rules ask."
-        )
+        told.append(HOT_METAL)
     if powered:
-        told.append(
-            "Coil field: keep pacemakers, insulin pumps and other implants, rings and watches out of reach of the "
-            "field. Exposure is for a competent person to assess (guidelines of ICNIRP; in the European Union "
-            "Directive 2013/35/EU)."
-        )
-        told.append(
-            "Voltage: supply, coil, leads and capacitors can kill, and capacitors keep their charge after "
-            "switching off: isolate, discharge, prove dead. Work for licensed electricians under local codes "
-            "(IEC 60519-1 covers the safety of electroheating installations)."
-        )
-        told.append(
-            "Cooling water: a leak onto hot metal flashes to steam, and water under a melt explodes. Interlock flow "
-            "and temperature as the maker of the equipment and local codes ask."
-        )
+        told += [COIL_FIELD, VOLTAGE, COOLING_WATER]
     if hottest > FUMES:
-        told.append(
-            "Fumes: oil, paint, scale and coatings smoke; zinc, cadmium and lead are poisonous. Clean the piece, "
-            "extract the fumes, keep to local workplace limits."
-        )
-    if powered and material.curie_temperature is None:
-        told.append(
-            "Force: the field pushes light non-magnetic pieces out of the coil; hold them as the maker of the "
-            "equipment prescribes."
-        )
-    told.extend(_near_melting(setup, hottest))
-    if any(isinstance(stage.control, HoldTemperature) for stage in setup.stages):
-        told.append(
-            "Holding: a control that reads the wrong temperature heats on without end; have an independent "
-            "over-temperature cut-out as local codes ask."
-        )
-    return tuple(told)
-
-
-def _near_melting(setup: Setup, hottest: float) -> list[str]:
+        told.append(SMOKE)
+    if powered and setup.material.curie_temperature is None:
+        told.append(FORCE)
     solidus = setup.material.solidus
-    if solidus is None or hottest < solidus - NEAR_MELTING:
-        return []
-    melt = (
-        "Molten metal explodes with water and damp: keep everything under and around the coil dry, and leave melting "
-        "to a plant and people licensed for it."
-    )
-    if setup.material.group == "aluminium":
-        return [f"Near melting: aluminium softens and runs without changing colour. {melt}"]
-    return [f"Near melting: the piece loses its strength and can drop. {melt}"]
+    if solidus is not None and hottest >= solidus - NEAR_MELTING:
+        told.append(MELTING_ALUMINIUM if setup.material.group == "aluminium" else MELTING)
+    if any(isinstance(stage.control, HoldTemperature) for stage in setup.stages):
+        told.append(HOLDING)
+    return tuple(told)

@@ -10,13 +10,11 @@ import numpy as np
 
 from thermal.case import Case
 from thermal.constants import ZERO_CELSIUS
-from thermal.control import HoldTemperature
 from thermal.report.labels import fit_text, spread_out
+from thermal.report.levels import draw_levels, targets
 from thermal.report.style import (
     DPI,
     LEFT,
-    LEVEL_COLOUR,
-    LEVEL_ROOM,
     LIMIT_COLOUR,
     LONG_RUN,
     MARGIN,
@@ -41,7 +39,6 @@ from thermal.setup import Setup
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
-    from matplotlib.text import Text
 
 
 @dataclass(frozen=True)
@@ -71,24 +68,32 @@ def curves_figure(setup: Setup, case: Case, history: History) -> "Figure":
     FigureCanvasAgg(figure)
     end = float(history.time[-1])
     clock = Clock("min", 60.0) if end > LONG_RUN else Clock("s", 1.0)
+    fine = _fine(setup, history)
     spans = limit_spans(history)
     strip = 0.030 * len(spans)
-    upper = figure.add_axes((LEFT, 0.36 + strip, RIGHT - LEFT, 0.485 - strip))
-    lower = figure.add_axes((LEFT, 0.115, RIGHT - LEFT, 0.20), sharex=upper)
+    powered = _is_powered(history)
+    bottom = 0.36 + strip if powered else 0.115
+    upper = figure.add_axes((LEFT, bottom, RIGHT - LEFT, 0.845 - bottom))
     upper.set_xlim(0.0, max(end, 1e-9) / clock.seconds)
-    upper.tick_params(labelbottom=False)
-    for axes in (upper, lower):
-        for start, stop in off_spans(history):
-            axes.axvspan(start / clock.seconds, stop / clock.seconds, color=OFF_COLOUR, linewidth=0)
-    fine = _fine(setup, history)
+    if powered:
+        lower = figure.add_axes((LEFT, 0.115, RIGHT - LEFT, 0.20), sharex=upper)
+        upper.tick_params(labelbottom=False)
+        for axes in (upper, lower):
+            for start, stop in off_spans(history):
+                axes.axvspan(start / clock.seconds, stop / clock.seconds, color=OFF_COLOUR, linewidth=0)
+        _powers(lower, setup, fine, clock)
+    figure.axes[-1].set_xlabel(f"time, {clock.unit}")
     _temperatures(upper, setup, history, fine, clock)
-    _powers(lower, setup, fine, clock)
     if spans:
         limits = figure.add_axes((LEFT, 0.335, RIGHT - LEFT, strip), sharex=upper)
         _limits(limits, spans, clock)
     _stages(figure, upper, setup, history, clock)
     _frame(figure, setup, case, history)
     return figure
+
+
+def _is_powered(history: History) -> bool:
+    return bool((history.absorbed_power > 0.0).any())
 
 
 def _fine(setup: Setup, history: History) -> Sampled:
@@ -108,7 +113,7 @@ def _temperatures(axes: "Axes", setup: Setup, history: History, fine: Sampled, c
     names = [name for name in fine.readings if name != "spread"]
     own = zip(cycle(OWN_COLOURS), cycle(OWN_DASHES), strict=False)
     lines = []
-    top = max(float(fine.readings["maximum"].max()), max(T for _, T in _targets(setup)) if _targets(setup) else 0.0)
+    top = max([float(fine.readings["maximum"].max()), *(T for _, T in targets(setup))])
     for name in names:
         colour, dashes, width = STYLES[name] if name in STYLES else (*next(own), 1.3)
         values = fine.readings[name] - ZERO_CELSIUS
@@ -117,72 +122,8 @@ def _temperatures(axes: "Axes", setup: Setup, history: History, fine: Sampled, c
     low = min(float(fine.extended.min()) - ZERO_CELSIUS, 0.0)
     axes.set_ylim(low, top - ZERO_CELSIUS + 0.09 * (top - ZERO_CELSIUS - low))
     axes.set_ylabel("temperature, °C")
-    _levels(axes, setup)
+    draw_levels(axes, setup, [end.record.start / clock.seconds for end in stage_ends(setup, history)])
     _end_labels(axes, lines)
-
-
-def _targets(setup: Setup) -> list[tuple[str, float]]:
-    """Name and temperature [K] of everything the schedule asks for, each once."""
-    found: dict[tuple[str, float], None] = {}
-    for stage in setup.stages:
-        if stage.stop is not None:
-            for name, T in stage.stop.temperatures.items():
-                found[(f"target {name}", T)] = None
-        if isinstance(stage.control, HoldTemperature):
-            found[(f"hold {stage.control.reading}", stage.control.set_point)] = None
-    return list(found)
-
-
-def _levels(axes: "Axes", setup: Setup) -> None:
-    """Targets, and the Curie point and the solidus where the picture reaches them, as labelled lines."""
-    low, high = axes.get_ylim()
-    material = setup.material
-    levels = _targets(setup)
-    for name, T in (("Curie point", material.curie_temperature), ("solidus", material.solidus)):
-        if T is not None and low < T - ZERO_CELSIUS < high + 0.15 * (high - low):
-            levels.append((name, T))
-            high = max(high, T - ZERO_CELSIUS + 0.06 * (high - low))
-    axes.set_ylim(low, high)
-    heights = sorted({T - ZERO_CELSIUS for _, T in levels})
-    placed: list[Text] = []
-    for name, T in sorted(levels, key=lambda level: level[1]):
-        height = T - ZERO_CELSIUS
-        axes.axhline(height, color=LEVEL_COLOUR, linewidth=0.9, linestyle=(0, (10, 4)), zorder=2)
-        placed.append(_level_label(axes, f"{name} {height:.0f} °C", height, heights, placed))
-
-
-def _level_label(axes: "Axes", words: str, height: float, heights: list[float], placed: "list[Text]") -> "Text":
-    """A label above its line, below it where another line is close above; moved right clear of earlier labels."""
-    from matplotlib.patheffects import withStroke
-
-    points = 72.0 / axes.figure.dpi
-    rows = [float(axes.transData.transform((0.0, each))[1]) * points for each in heights]
-    own = rows[heights.index(height)]
-    room_above = min((row - own for row in rows if row > own), default=LEVEL_ROOM)
-    room_below = min((own - row for row in rows if row < own), default=LEVEL_ROOM)
-    below = room_above < LEVEL_ROOM <= room_below
-    label = axes.annotate(
-        words,
-        xy=(0.0, height),
-        xycoords=("axes fraction", "data"),
-        xytext=(6, -2.5 if below else 2),
-        textcoords="offset points",
-        verticalalignment="top" if below else "bottom",
-        fontsize=8.5,
-        color="#333333",
-        zorder=4,
-        path_effects=[withStroke(linewidth=2.5, foreground="white")],
-    )
-    shift = 6.0
-    while (hit := _hit(label, placed)) is not None:
-        shift += (hit.get_window_extent().x1 - label.get_window_extent().x0) * points + 8.0
-        label.set_position((shift, label.get_position()[1]))
-    return label
-
-
-def _hit(label: "Text", placed: "list[Text]") -> "Text | None":
-    box = label.get_window_extent()
-    return next((other for other in placed if box.overlaps(other.get_window_extent())), None)
 
 
 def _end_labels(axes: "Axes", lines: list[tuple[str, str, float]]) -> None:
@@ -228,7 +169,6 @@ def _powers(axes: "Axes", setup: Setup, fine: Sampled, clock: Clock) -> None:
         axes.plot(time, supply, color="#8C4A94", linestyle=(0, (6, 2)), label="from the supply\n(whole coil)")
     axes.set_ylim(bottom=0.0)
     axes.set_ylabel("power, kW")
-    axes.set_xlabel(f"time, {clock.unit}")
     axes.legend(loc="upper left", bbox_to_anchor=(1.0, 1.08), frameon=False, fontsize=8.5, labelspacing=0.8)
 
 
@@ -283,10 +223,11 @@ def _frame(figure: "Figure", setup: Setup, case: Case, history: History) -> None
     """Title, verdict, and the footer with the piece and the version."""
     width = (MARGIN - LEFT) * SIZE[0] * figure.dpi
     title = figure.text(LEFT, 0.978, "", fontweight="bold", va="top")
-    fit_text(title, setup.title, width, (14.0, 12.0, 10.0))
+    marked = f"Interrupted, incomplete: {setup.title}" if history.status == "interrupted" else setup.title
+    fit_text(title, marked, width, (14.0, 12.0, 10.0))
     under = title.get_window_extent().y0 / (SIZE[1] * figure.dpi) - 0.008
     fit_text(figure.text(LEFT, under, "", va="top"), sentence(setup, history), width, (9.5, 8.5, 7.5))
     figure.text(LEFT, 0.022, piece_in_words(setup, case), fontsize=8.5, color="#333333", va="bottom")
     figure.text(MARGIN, 0.022, f"thermal {own_version()}", fontsize=8.5, color="#333333", va="bottom", ha="right")
-    if off_spans(history):
+    if _is_powered(history) and off_spans(history):
         figure.text(LEFT, 0.045, "grey: power off", fontsize=8.5, color="#333333", va="bottom")

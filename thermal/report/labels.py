@@ -1,11 +1,20 @@
-"""Keeping labels apart and inside the picture: positions along one line, lines of a title."""
+"""Keeping labels apart and inside the picture: positions along one line, free places, lines of a title."""
 
 from bisect import bisect_right
 from collections.abc import Sequence
 from typing import TYPE_CHECKING
 
+import numpy as np
+import numpy.typing as npt
+
 if TYPE_CHECKING:
     from matplotlib.text import Text
+
+Box = tuple[float, float, float, float]
+"""Left, bottom, right, top [pixels]."""
+
+ROOM = 16.0
+"""Distance to the nearest curve [pixels] beyond which more is no better."""
 
 
 def spread_out(wanted: Sequence[float], sizes: Sequence[float], low: float, high: float) -> list[float] | None:
@@ -39,6 +48,30 @@ def _start(members: Sequence[int], wanted: Sequence[float], sizes: Sequence[floa
         offsets.append(wanted[m] - before - 0.5 * sizes[m])
         before += sizes[m]
     return min(max(sum(offsets) / len(offsets), low), high - before)
+
+
+def cost_of_place(
+    box: Box,
+    curves: Sequence[npt.NDArray[np.float64]],
+    rows: Sequence[float],
+    upright: Sequence[float],
+    placed: Sequence[Box],
+) -> tuple[int, int, int, float]:
+    """How bad a place for a label is, to be compared: labels hit, lines across, upright lines, lack of room.
+
+    curves : (k, 2) points [pixels] with x rising ; rows : y of level lines ; upright : x of upright lines ;
+    placed : boxes that are taken.
+    """
+    x0, y0, x1, y1 = box
+    labels = sum(x0 < b[2] + ROOM / 2 and b[0] < x1 + ROOM / 2 and y0 < b[3] and b[1] < y1 for b in placed)
+    gaps = [ROOM, *(max(y0 - row, row - y1) for row in rows)]
+    for curve in curves:
+        x, y = curve[:, 0], curve[:, 1]
+        inside = y[(x >= x0) & (x <= x1)]
+        reach = np.concatenate([inside, np.interp((x0, x1), x, y)])
+        gaps.append(max(y0 - float(reach.max()), float(reach.min()) - y1))
+    across = sum(gap <= 0.0 for gap in gaps)
+    return labels, across, sum(x0 < x < x1 for x in upright), ROOM - min(gaps)
 
 
 def fit_text(text: "Text", words: str, width: float, sizes: Sequence[float]) -> None:

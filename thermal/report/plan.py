@@ -9,6 +9,7 @@ from thermal.case.schema import Plate, Tube
 from thermal.control import FixedDrive, HoldTemperature
 from thermal.eddy.exact import skin_depth
 from thermal.interfaces import Demand, EddyField, OperatingPoint
+from thermal.report.tables import COIL, PIECE
 from thermal.report.text import bullets, columns
 from thermal.report.words import piece_in_words
 from thermal.results.verdict import LIMIT_WORDS, celsius
@@ -96,23 +97,28 @@ def _section(case: Case) -> tuple[str, float]:
 def _condition_table(setup: Setup, case: Case, found: tuple[Condition, ...]) -> str:
     name, size = _section(case)
     rows = [
-        ["", *(f"{each.name}, {celsius(each.T)}" for each in found)],
-        ["relative permeability at the surface", *(f"{each.field.mu_r[-1]:.3g}" for each in found)],
-        ["skin depth, mm", *(f"{each.skin_depth * 1e3:.3g}" for each in found)],
-        [f"{name} / skin depth", *(f"{size / each.skin_depth:.3g}" for each in found)],
-        ["field at the surface, kA/m rms", *(f"{each.field.H_surface_rms / 1e3:.3g}" for each in found)],
-        ["absorbed power, kW", *(f"{each.field.power / 1e3:.3g}" for each in found)],
+        ["", "of", *(f"{each.name}, {celsius(each.T)}" for each in found)],
+        ["relative permeability at the surface", PIECE, *(f"{each.field.mu_r[-1]:.3g}" for each in found)],
+        ["skin depth, mm", PIECE, *(f"{each.skin_depth * 1e3:.3g}" for each in found)],
+        [f"{name} / skin depth", PIECE, *(f"{size / each.skin_depth:.3g}" for each in found)],
+        ["field at the surface, kA/m rms", PIECE, *(f"{each.field.H_surface_rms / 1e3:.3g}" for each in found)],
+        ["absorbed power, kW", PIECE, *(f"{each.field.power / 1e3:.3g}" for each in found)],
     ]
     if setup.has_coil:
         points = [each.point for each in found]
         rows += [
-            ["supply power, kW", *(f"{point.supply_power / 1e3:.3g}" for point in points)],
-            ["coil current, A rms", *(f"{point.coil_current_rms:.4g}" for point in points)],
-            ["coil voltage, V rms", *(f"{point.coil_voltage_rms:.4g}" for point in points)],
-            ["power factor at the coil terminals", *(f"{point.power_factor:.2g}" for point in points)],
+            ["supply power, kW", COIL, *(f"{point.supply_power / 1e3:.3g}" for point in points)],
+            ["coil current, A rms", COIL, *(f"{point.coil_current_rms:.4g}" for point in points)],
+            ["coil voltage, V rms", COIL, *(f"{point.coil_voltage_rms:.4g}" for point in points)],
+            ["power factor at the coil terminals", COIL, *(f"{point.power_factor:.2g}" for point in points)],
+            [
+                "electrical efficiency (absorbed/supply), %",
+                COIL,
+                *(f"{100.0 * each.field.power / (setup.share * each.point.supply_power):.3g}" for each in found),
+            ],
         ]
-    limits = [each.point.limit for each in found]
-    rows.append(["what bounds it", *("the drive" if limit is None else LIMIT_WORDS[limit] for limit in limits)])
+    bounds = ["the drive" if each.point.limit is None else LIMIT_WORDS[each.point.limit] for each in found]
+    rows.append(["what bounds it", COIL if setup.has_coil else PIECE, *bounds])
     return columns(rows)
 
 

@@ -18,8 +18,6 @@ OWN_DASHES = ((0, (5, 1.5, 1, 1.5)), (0, (3, 1.5)), (0, (8, 2, 1, 2, 1, 2)), (0,
 LEVEL_COLOUR = "#6A6A6A"
 OFF_COLOUR = "#ECECEC"
 LIMIT_COLOUR = "#A67800"
-LEVEL_ROOM = 13.0
-"""Height of a level's label [points]."""
 NAME_AT_MOST = 18
 """Longest name of a reading beside its curve, in letters."""
 LONG_RUN = 600.0

@@ -1,7 +1,6 @@
 """The result of a run as plain text for the console."""
 
 import math
-from collections.abc import Sequence
 from pathlib import Path
 
 import numpy as np
@@ -11,19 +10,24 @@ from thermal.constants import ZERO_CELSIUS
 from thermal.report.advice import cautions, expectation, remarks
 from thermal.report.text import bullets, columns, paragraph
 from thermal.results.balance import relative_residual
-from thermal.results.history import History
+from thermal.results.history import Array, History
 from thermal.results.stages import limit_spans, stage_ends
-from thermal.results.verdict import LIMIT_WORDS, depth_of_maximum, sentence, spans_in_words
+from thermal.results.verdict import LIMIT_WORDS, depth_of_maximum, seconds, sentence, spans_in_words
 from thermal.setup import Setup
 
-JOULES_PER_KWH = 3.6e6
+SMALL = 3.6e5
+"""Below this energy [J], 0.1 kWh, a table of energies is in Wh."""
 LOSS_WORDS = {
     "radiation": "radiated",
     "convection": "taken by the gas (convection)",
     "lining": "through the coil lining",
     "ends": "lost at the end faces",
+    "edges": "lost at the narrow edges",
     "bore": "lost out of the bore",
 }
+NOTHING = 1e-9
+"""Share of the largest energy below which a row says nothing."""
+PIECE, COIL = "this piece", "whole coil"
 REASON_WORDS = {"target": "target met", "time": "time is up"}
 NO_COIL = (
     "No electrical answers: the case has no [coil] with a [supply], so supply power, coil current, voltage, "
@@ -36,6 +40,10 @@ def result_text(setup: Setup, case: Case, history: History, folder: Path | None)
     parts = [
         setup.title,
         paragraph(sentence(setup, history)),
+    ]
+    if notes := remarks(setup, case, history):
+        parts.append(_headed("Notes", bullets(notes)))
+    parts += [
         _headed("At the end of each stage", stage_table(setup, history)),
         _headed("Energy of this workpiece", energy_table(setup, history)),
         _headed("Peak values", peak_table(setup, history)),
@@ -43,22 +51,22 @@ def result_text(setup: Setup, case: Case, history: History, folder: Path | None)
     if setup.has_coil:
         parts.append(_headed("Limits of the supply", bullets(_limits(history))))
     parts.append(_headed("What to expect", bullets(expectation(case))))
-    if notes := remarks(setup, case, history):
-        parts.append(_headed("Notes", bullets(notes)))
-    parts.append(_headed("Cautions", bullets(cautions(setup, history))))
     parts.append(f"Assumed: {len(setup.assumptions)} values; `thermal check` and summary.json list them.")
     if folder is not None:
         parts.append(paragraph(f"Files: {folder}"))
+    short = [each.short for each in cautions(setup, history)]
+    parts.append(_headed("Cautions, in short (in full in summary.json)", bullets(short)))
     return "\n\n".join(parts) + "\n"
 
 
 def stage_table(setup: Setup, history: History) -> str:
     """State at the start and at the end of each stage, one column each."""
     ends = stage_ends(setup, history)
+    digits = 1 if history.time[-1] >= 10.0 else 4
     rows = [
         ["", "start", *(end.name for end in ends)],
         ["ends because", "", *(REASON_WORDS.get(end.record.reason, end.record.reason) for end in ends)],
-        ["time, s", *(f"{history.time[i]:.1f}" for i in (0, *(end.last for end in ends)))],
+        ["time, s", *(f"{history.time[i]:.{digits}f}" for i in (0, *(end.last for end in ends)))],
     ]
     moments = [0, *(end.last for end in ends)]
     for name, series in history.readings.items():
@@ -75,23 +83,29 @@ def energy_table(setup: Setup, history: History) -> str:
     """Where the energy went, from the supply to the heat in the workpiece, every boundary named."""
     spent = {name: float(series[-1]) for name, series in history.energy.items()}
     whole = spent["supply"] if setup.has_coil else spent["absorbed"]
-    rows = [["", "kWh", "%", "kWh/t"]]
+    largest = max(abs(energy) for energy in spent.values())
+    unit, joules, digits = ("Wh", 3.6e3, 2) if largest < SMALL else ("kWh", 3.6e6, 4)
+    rows = [["", unit, "%", "kWh/t"]]
 
     def add(label: str, energy: float) -> None:
+        if abs(energy) <= NOTHING * largest:
+            return
         share = f"{100.0 * energy / whole:.1f}" if whole > 0.0 else "-"
         per_tonne = energy / setup.mass / 3600.0
-        rows.append([label, f"{energy / JOULES_PER_KWH:.4f}", share, f"{per_tonne:.1f}"])
+        rows.append([label, f"{energy / joules:.{digits}f}", share, f"{per_tonne:.1f}"])
 
     if setup.has_coil:
         add("supply output at the coil terminals", spent["supply"])
         add("  lost in coil copper and leads", spent["coil"])
-        if spent["tank"] > 0.0:
-            add("  lost in the tank", spent["tank"])
+        add("  lost in the tank", spent["tank"])
     add("absorbed in the workpiece", spent["absorbed"])
     for name, energy in spent.items():
         if name.startswith("loss: "):
             account = name.removeprefix("loss: ")
-            add(f"  {LOSS_WORDS.get(account, account)}", energy)
+            words = LOSS_WORDS.get(account, account)
+            # In a touching row a face without losses in the coil loses heat only once the piece is out.
+            alone = ", in the open (transfer)" if setup.losses["coil"].get(account) == () else ""
+            add(f"  {words}{alone}", energy)
     add("stored as heat when the run ends", spent["stored"])
     told = [columns(rows)]
     if setup.has_coil and setup.share < 1.0:
@@ -103,26 +117,29 @@ def energy_table(setup: Setup, history: History) -> str:
 
 
 def peak_table(setup: Setup, history: History) -> str:
-    """Largest values of the run; the electrical ones are of the whole coil."""
+    """Largest and smallest values of the run, and whether each is of this piece or of the whole coil."""
     on = history.absorbed_power > 0.0
     outer = setup.section.mesh.faces["outer"]
     flux = history.absorbed_power / float(outer.area.sum())
-    rows = [["", "largest", "smallest with power on"]]
+    rows = [["", "of", "largest", "smallest with power on"]]
 
-    def add(label: str, series: Sequence[float] | np.typing.NDArray[np.float64], digits: int) -> None:
-        values = np.asarray(series)[on]
+    def add(label: str, of: str, series: Array, digits: int) -> None:
+        values = series[on]
         if values.size and not np.isnan(values).all():
-            rows.append([label, f"{np.nanmax(values):.{digits}f}", f"{np.nanmin(values):.{digits}f}"])
+            rows.append([label, of, f"{np.nanmax(values):.{digits}f}", f"{np.nanmin(values):.{digits}f}"])
 
     if setup.has_coil:
-        add("supply power, kW", history.supply_power / 1e3, 2)
-        add("coil current, A rms", history.coil_current_rms, 0)
-        add("coil voltage, V rms", history.coil_voltage_rms, 1)
-        add("power factor at the coil terminals", history.power_factor, 3)
-    add("absorbed power, kW", history.absorbed_power / 1e3, 2)
-    add("absorbed per surface, kW/cm2", flux / 1e7, 4)
-    add("field at the surface, kA/m rms", history.H_surface_rms / 1e3, 2)
-    add("frequency, kHz", history.frequency / 1e3, 3)
+        add("supply power, kW", COIL, history.supply_power / 1e3, 2)
+        add("coil current, A rms", COIL, history.coil_current_rms, 0)
+        add("coil voltage, V rms", COIL, history.coil_voltage_rms, 1)
+        add("power factor at the coil terminals", COIL, history.power_factor, 3)
+        drawn = np.where(on, setup.share * history.supply_power, np.nan)
+        add("electrical efficiency (absorbed/supply), %", COIL, 100.0 * history.absorbed_power / drawn, 1)
+    add("absorbed power, kW", PIECE, history.absorbed_power / 1e3, 2)
+    add("absorbed per surface, W/cm2", PIECE, flux / 1e4, 1)
+    add("field at the surface, kA/m rms", PIECE, history.H_surface_rms / 1e3, 2)
+    unit, hertz = ("kHz", 1e3) if setup.frequency >= 1e3 else ("Hz", 1.0)
+    add(f"frequency, {unit}", COIL if setup.has_coil else PIECE, history.frequency / hertz, 3 if hertz > 1.0 else 0)
     return columns(rows) if len(rows) > 1 else "  no power was used"
 
 
@@ -131,7 +148,7 @@ def _limits(history: History) -> list[str]:
     if not spans:
         return ["no limit bound"]
     return [
-        f"{LIMIT_WORDS[name]}: {spans_in_words(found)} ({math.fsum(b - a for a, b in found):.1f} s in all)"
+        f"{LIMIT_WORDS[name]}: {spans_in_words(found)} ({seconds(math.fsum(b - a for a, b in found))} in all)"
         for name, found in spans.items()
     ]
 

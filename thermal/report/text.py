@@ -1,23 +1,33 @@
 """Plain text in columns, no wider than a terminal."""
 
+import shutil
+import sys
 import textwrap
 from collections.abc import Sequence
 
-WIDTH = 100
+WIDTH, LEAST_WIDTH = 100, 60
+"""Most and least letters in a line."""
 INDENT = "  "
+
+
+def width() -> int:
+    """Letters in a line: as wide as a terminal within limits, always the most where the text goes elsewhere."""
+    if not sys.stdout.isatty():
+        return WIDTH
+    return max(LEAST_WIDTH, min(WIDTH, shutil.get_terminal_size().columns))
 
 
 def paragraph(text: str) -> str:
     """A text wrapped to the width."""
-    return textwrap.fill(text, WIDTH)
+    return textwrap.fill(text, width())
 
 
 def bullets(lines: Sequence[str]) -> str:
     """Texts as a list, each wrapped to the width."""
-    return "\n".join(textwrap.fill(line, WIDTH, initial_indent="  - ", subsequent_indent="    ") for line in lines)
+    return "\n".join(textwrap.fill(line, width(), initial_indent="  - ", subsequent_indent="    ") for line in lines)
 
 
-def columns(rows: Sequence[Sequence[str]], most_first: int = 44) -> str:
+def columns(rows: Sequence[Sequence[str]], most_first: int = 48) -> str:
     """Rows in aligned columns, the first to the left and the others to the right.
 
     Columns that do not fit the width go into further blocks below, with the first column repeated; a first column
@@ -27,13 +37,13 @@ def columns(rows: Sequence[Sequence[str]], most_first: int = 44) -> str:
     first = max(len(label) for label in labels)
     widths = [max(len(row[c]) for row in rows) + 2 for c in range(1, len(rows[0]))]
     blocks: list[list[int]] = [[]]
-    used = len(INDENT) + first
-    for column, width in enumerate(widths, start=1):
-        if used + width > WIDTH and blocks[-1]:
+    used, room = len(INDENT) + first, width()
+    for column, needed in enumerate(widths, start=1):
+        if used + needed > room and blocks[-1]:
             blocks.append([])
             used = len(INDENT) + first
         blocks[-1].append(column)
-        used += width
+        used += needed
     return "\n\n".join(_block(rows, labels, first, block, widths) for block in blocks)
 
 

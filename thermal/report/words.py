@@ -3,6 +3,7 @@
 from thermal.case import Case
 from thermal.case.quantity import shown
 from thermal.case.schema import Plate, Tube
+from thermal.results.verdict import hertz
 from thermal.setup import Setup
 
 
@@ -18,7 +19,7 @@ def piece_in_words(setup: Setup, case: Case) -> str:
             size = f"cylinder {shown(piece.diameter, 'mm')}"
     told = [f"{size}, {shown(piece.length, 'mm')} long, {setup.material.key}, {setup.mass:.3g} kg"]
     if setup.frequency > 0.0:
-        told.append(shown(setup.frequency, "kHz"))
+        told.append(hertz(setup.frequency))
     if case.coil is not None:
         told.append(f"coil {case.coil.turns:g} turns, {shown(case.coil.length, 'mm')} long")
     return "; ".join(told)

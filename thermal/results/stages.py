@@ -1,10 +1,10 @@
 """Where the stages of a run ended, when limits bound and when the power was off."""
 
-from collections import Counter
 from dataclasses import dataclass
 
 import numpy as np
 
+from thermal.case.naming import numbered
 from thermal.results.history import Array, History, StageRecord
 from thermal.setup import Setup
 
@@ -43,13 +43,7 @@ def stage_ends(setup: Setup, history: History) -> tuple[StageEnd, ...]:
 
 def stage_names(setup: Setup) -> tuple[str, ...]:
     """Kind of every planned stage, with a running number where the kind occurs more than once."""
-    kinds = [stage.kind for stage in setup.stages]
-    total, seen = Counter(kinds), Counter[str]()
-    names = []
-    for kind in kinds:
-        seen[kind] += 1
-        names.append(f"{kind} {seen[kind]}" if total[kind] > 1 else kind)
-    return tuple(names)
+    return numbered([stage.kind for stage in setup.stages])
 
 
 def limit_spans(history: History) -> dict[str, list[Span]]:

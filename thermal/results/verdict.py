@@ -30,9 +30,12 @@ def sentence(setup: Setup, history: History) -> str:
             f"Interrupted at {seconds(last.record.end)} in the {last.name} stage, incomplete: "
             f"{_surface_and_core(history, last.last)}"
         )
-    if (warning := _melting(setup, history, ends[-1])) is not None:
+    passed = _solidus_passed(setup, history)
+    late = {} if passed is None else _met_after(setup, ends, passed)
+    if (warning := _melting(setup, passed, late, ends[-1])) is not None:
         first.append(warning)
-    outcomes = [text for end in ends if (text := _outcome(setup, history, end)) is not None]
+    in_time = [end for end in ends if end.number not in late]
+    outcomes = [text for end in in_time if (text := _outcome(setup, history, end)) is not None]
     if not any(stage.stop for stage in setup.stages) and history.status != "interrupted":
         outcomes.append(f"runs to {seconds(ends[-1].record.end)}: {_surface_and_core(history, ends[-1].last)}")
     parts = [*outcomes, *_limits(history), hottest_point(history)]
@@ -83,7 +86,9 @@ def celsius(T: float) -> str:
 
 
 def seconds(time: float) -> str:
-    """A time [s] with about three figures."""
+    """A time [s] with about three figures; below one second in ms."""
+    if 0.0 < time < 0.9995:
+        return f"{time * 1e3:.3g} ms"
     digits = 0 if time >= 100.0 else 1 if time >= 10.0 else 2
     text = f"{time:.{digits}f}"
     return (text.rstrip("0").rstrip(".") if "." in text else text) + " s"
@@ -92,6 +97,11 @@ def seconds(time: float) -> str:
 def power(value: float) -> str:
     """A power [W] with about two figures behind the unit that fits."""
     return f"{value / 1e3:.3g} kW" if abs(value) >= 1e3 else f"{value:.3g} W"
+
+
+def hertz(frequency: float) -> str:
+    """A frequency [Hz] behind the unit that fits."""
+    return f"{frequency / 1e3:.6g} kHz" if frequency >= 1e3 else f"{frequency:.6g} Hz"
 
 
 def spans_in_words(spans: list[Span]) -> str:
@@ -111,16 +121,31 @@ def _surface_and_core(history: History, i: int) -> str:
     return f"surface {celsius(history.readings['surface'][i])}, core {celsius(history.readings['core'][i])}"
 
 
-def _melting(setup: Setup, history: History, last: StageEnd) -> str | None:
-    """Sentence about the solidus or the end of the run at the liquidus."""
+def _solidus_passed(setup: Setup, history: History) -> float | None:
+    """First moment [s] the hottest point lies above the solidus."""
+    if setup.material.solidus is None:
+        return None
+    return first_crossing(history.time, history.readings["maximum"], setup.material.solidus)
+
+
+def _met_after(setup: Setup, ends: tuple[StageEnd, ...], passed: float) -> dict[int, str]:
+    """Number of a stage -> heating targets it met only after the solidus was passed [s]: no success."""
+    found = {}
+    for end in ends:
+        stop = setup.stages[end.number].stop
+        if stop is not None and not stop.falling and end.record.reason == "target" and end.record.end > passed:
+            found[end.number] = f"{_events(stop)} ({seconds(end.record.end)})"
+    return found
+
+
+def _melting(setup: Setup, passed: float | None, late: dict[int, str], last: StageEnd) -> str | None:
+    """Sentence about the solidus, with the targets that were met too late, or the end of the run at the liquidus."""
     solidus = setup.material.solidus
-    passed = None
-    if solidus is not None:
-        passed = first_crossing(history.time, history.readings["maximum"], solidus)
     told = []
     if passed is not None and solidus is not None:
+        before = f", before {' and '.join(late.values())}" if late else ""
         told.append(
-            f"The hottest point passes the solidus {celsius(solidus)} at {seconds(passed)}: "
+            f"The hottest point passes the solidus {celsius(solidus)} at {seconds(passed)}{before}: "
             "the piece burns or melts there"
         )
     if last.record.reason == "too hot":
@@ -178,6 +203,15 @@ def _goals(stop: Stop, names: list[str], spread: bool) -> list[str]:
     if spread and stop.spread is not None:
         goals.append(f"a spread within {stop.spread:.4g} K")
     return goals
+
+
+def _events(stop: Stop) -> str:
+    """Targets as what happens: the core reaches 1180 °C."""
+    words = {"maximum": "the hottest point", "core": "the core", "surface": "the surface", "mean": "the mean"}
+    told = [f"{words.get(name, name)} reaches {celsius(T)}" for name, T in stop.temperatures.items()]
+    if stop.spread is not None:
+        told.append(f"the spread is within {stop.spread:.4g} K")
+    return " and ".join(told)
 
 
 def _far(stop: Stop, readings: dict[str, float]) -> tuple[list[str], bool]:

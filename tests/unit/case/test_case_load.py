@@ -117,7 +117,7 @@ def test_constant_coefficient_needs_no_speed() -> None:
 def test_defaults_of_a_hold_carry_its_index() -> None:
     case = from_text(starter("tube"), ".", {"schedule.1.reset": "3 s"})
     lines = [line for line in case.defaults_used if line.startswith("schedule")]
-    assert lines == ["schedule.1.response = 0.5 s (assumption: reaction time of the temperature control)"]
+    assert lines == ["schedule.1 (hold): response = 0.5 s (assumption: reaction time of the temperature control)"]
 
 
 def test_no_defaults_for_absent_sections() -> None:
@@ -180,6 +180,19 @@ def test_refused_override(path: str, value: str, line: str) -> None:
     with pytest.raises(CaseError) as caught:
         from_text(starter("billet"), ".", {path: value})
     assert caught.value.problems == (line,)
+
+
+def test_a_mistake_made_by_an_override_is_no_mistake_of_the_file() -> None:
+    def problems(text: str, path: str, value: str) -> list[str]:
+        with pytest.raises(CaseError) as caught:
+            from_text(text, ".", {path: value})
+        return [problem.split(": ")[0] for problem in caught.value.problems]
+
+    sound = starter("heater")
+    assert problems(sound, "workpiece.emissivity", "0.8") == ["--set    workpiece.emissivity"]
+    assert problems(sound, "schedule.0.drive.surface_field", "1 kA/m") == ["--set    schedule.0.drive (heat)"]
+    spoilt = sound.replace('surface = "oxidised"', "")
+    assert problems(spoilt, "workpiece.initial", "30 °C") == ["line 4   workpiece"]
 
 
 def test_changes_come_after_overrides_and_keep_the_original() -> None:

@@ -32,8 +32,14 @@ def test_missing_material_file(tmp_path: Path) -> None:
 
 def test_unknown_surface_state_lists_those_there_are() -> None:
     problem = _problem(BILLET.replace('"oxidised"', '"oxidized"', 1))
-    assert problem.startswith("line 9   workpiece.surface: steel-c45 has no surface state 'oxidized', ")
+    assert problem.startswith(
+        "line 9   workpiece.surface: steel-c45 has no surface state 'oxidized', did you mean 'oxidised'? (it has: "
+    )
     assert "did you mean 'oxidised'? (it has: " in problem
+
+
+def test_unknown_surface_state_without_a_near_one() -> None:
+    assert "steel-c45 has no surface state 'qqq' (it has: " in _problem(BILLET.replace('"oxidised"', '"qqq"', 1))
 
 
 def test_unknown_lining_and_gas() -> None:
@@ -45,12 +51,12 @@ def test_unknown_lining_and_gas() -> None:
 
 def test_target_at_the_solidus() -> None:
     problem = _problem(BILLET.replace("1150 °C", "1520 °C"))
-    assert problem.startswith("line 34  schedule.0.until.core: 1520 °C is not below the solidus of steel-c45 (")
+    assert problem.startswith("line 34  schedule.0.until.core (heat): 1520 °C is not below the solidus of steel-c45 (")
 
 
 def test_hold_above_the_solidus() -> None:
     text = BILLET + '[[schedule]]\nstage = "hold"\nat = { TC1 = "1550 °C" }\nduration = "5 s"\n'
-    assert "schedule.2.at.TC1: 1550 °C is not below the solidus of steel-c45 (" in _problem(text)
+    assert "schedule.2.at.TC1 (hold): 1550 °C is not below the solidus of steel-c45 (" in _problem(text)
 
 
 def test_initial_temperature_outside_the_data() -> None:
@@ -61,5 +67,5 @@ def test_initial_temperature_outside_the_data() -> None:
         from_text(hot, ".")
     assert [problem.split(":")[0] for problem in caught.value.problems] == [
         "line 10  workpiece.initial",
-        "line 34  schedule.0.until.core",
+        "line 34  schedule.0.until.core (heat)",
     ]

@@ -101,7 +101,7 @@ def test_the_sound_texts_are_sound() -> None:
         (
             "{ supply_power",
             "{ suply_power",
-            "line 21  schedule.0.drive.suply_power: unknown key, did you mean 'supply_power'?",
+            "line 21  schedule.0.drive.suply_power (heat): unknown key, did you mean 'supply_power'?",
         ),
         (
             'depth = "5 mm"',
@@ -111,7 +111,7 @@ def test_the_sound_texts_are_sound() -> None:
         (
             'duration = "10 s"',
             'duration = "10 s"\nresponce = "1 s"',
-            "line 27  schedule.1.responce: unknown key, did you mean 'response'?",
+            "line 27  schedule.1.responce (hold): unknown key, did you mean 'response'?",
         ),
         (
             'length = "200 mm"\n',
@@ -136,7 +136,7 @@ def test_the_sound_texts_are_sound() -> None:
         (
             '"hold"',
             '"soak"',
-            "line 24  schedule.1.stage: 'soak' is not a stage, known here: heat, hold, transfer",
+            "line 24  schedule.1.stage: 'soak' is not a stage, did you mean 'hold'?",
         ),
         (
             'shape = "cylinder"',
@@ -151,7 +151,7 @@ def test_the_sound_texts_are_sound() -> None:
         (
             '{ core = "1150 °C" }',
             '"1150 °C"',
-            "line 22  schedule.0.until: '1150 °C' is not a table of keys",
+            "line 22  schedule.0.until (heat): '1150 °C' is not a table of keys",
         ),
         # units
         ('"60 mm"', "60", 'line 5   workpiece.diameter: write the unit: "60 mm" (accepted: m, mm, in)'),
@@ -164,7 +164,7 @@ def test_the_sound_texts_are_sound() -> None:
         (
             '"1150 °C"',
             '"-300 °C"',
-            "line 22  schedule.0.until.core: '-300 °C' is below absolute zero (-273.15 °C)",
+            "line 22  schedule.0.until.core (heat): '-300 °C' is below absolute zero (-273.15 °C)",
         ),
         ("turns = 16", "turns = 0", "line 10  coil.turns: 0 turns: the number of turns must be finite and above zero"),
         # one of several
@@ -196,39 +196,39 @@ def test_the_sound_texts_are_sound() -> None:
         (
             "{ supply_power",
             '{ coil_current = "1 kA", supply_power',
-            "line 21  schedule.0.drive: both supply_power and coil_current are given, write exactly one of "
+            "line 21  schedule.0.drive (heat): both supply_power and coil_current are given, write exactly one of "
             "supply_power, absorbed_power, coil_current, coil_voltage, surface_field",
         ),
         (
             '{ supply_power = "60 kW" }',
             "{}",
-            "line 21  schedule.0.drive: nothing is asked for, write exactly one of "
+            "line 21  schedule.0.drive (heat): nothing is asked for, write exactly one of "
             "supply_power, absorbed_power, coil_current, coil_voltage, surface_field",
         ),
         (
             'until = { core = "1150 °C" }\n',
             "",
-            "line 19  schedule.0: it never ends, give until (with longest) or duration",
+            "line 19  schedule.0 (heat): it never ends, give until (with longest) or duration",
         ),
         (
             'until = { core = "1150 °C" }',
             'until = { core = "1150 °C" }\nduration = "10 s" ',
-            "line 23  schedule.0.duration: give until or duration, not both (longest bounds an until)",
+            "line 23  schedule.0.duration (heat): give until or duration, not both (longest bounds an until)",
         ),
         (
             'until = { core = "1150 °C" }',
             'longest = "20 s"\nduration = "10 s" ',
-            "line 22  schedule.0.longest: longest bounds an until, with a duration leave it out",
+            "line 22  schedule.0.longest (heat): longest bounds an until, with a duration leave it out",
         ),
         (
             '{ core = "1150 °C" }',
             "{}",
-            'line 22  schedule.0.until: no target is given, write for example until = { core = "1150 °C" }',
+            'line 22  schedule.0.until (heat): no target is given, write for example until = { core = "1150 °C" }',
         ),
         (
             '{ surface = "1200 °C" }',
             '{ surface = "1200 °C", core = "1190 °C" }',
-            "line 25  schedule.1.at: name exactly one of surface, core, mean or a reading",
+            "line 25  schedule.1.at (hold): name exactly one of surface, core, mean or a reading",
         ),
         # sections against each other
         (
@@ -259,33 +259,34 @@ def test_the_sound_texts_are_sound() -> None:
         (
             'drive = { supply_power = "60 kW" }',
             'drive = { supply_power = "60 kW", frequency = "1 kHz" }',
-            "line 21  schedule.0.drive.frequency: the supply sets the frequency, leave it out here",
+            "line 21  schedule.0.drive.frequency (heat): the supply sets the frequency, leave it out here",
         ),
         (
             '{ core = "1150 °C" }',
             '{ core = "15 °C" }',
-            "line 22  schedule.0.until.core: 15 °C is not above the initial temperature (20 °C)",
+            "line 22  schedule.0.until.core (heat): 15 °C is not above the initial temperature (20 °C)",
         ),
         (
             '{ core = "1150 °C" }',
             '{ spread = "20 K" }',
-            "line 22  schedule.0.until.spread: holds before heating starts, add a temperature, "
+            "line 22  schedule.0.until.spread (heat): holds before heating starts, add a temperature, "
             'for example core = "1150 °C"',
         ),
         (
             '{ core = "1150 °C" }',
             '{ cor = "1150 °C" }',
-            "line 22  schedule.0.until.cor: no such reading, did you mean 'core'?",
+            "line 22  schedule.0.until.cor (heat): no such reading, did you mean 'core'?",
         ),
         (
             '{ core = "1150 °C" }',
             '{ xyz = "1150 °C" }',
-            "line 22  schedule.0.until.xyz: no such reading, known here: surface, core, mean, maximum, spread, TC1",
+            "line 22  schedule.0.until.xyz (heat): no such reading, "
+            "known here: surface, core, mean, maximum, spread, TC1",
         ),
         (
             '{ surface = "1200 °C" }',
             '{ maximum = "1200 °C" }',
-            "line 25  schedule.1.at.maximum: cannot be held, name surface, core, mean or a reading",
+            "line 25  schedule.1.at.maximum (hold): cannot be held, name surface, core, mean or a reading",
         ),
         # readings
         (
@@ -343,13 +344,14 @@ def test_refusal(old: str, new: str, line: str) -> None:
         (
             "absorbed_power",
             "supply_power",
-            "line 11  schedule.0.drive.supply_power: needs [coil] and [supply]; without them drive with "
+            "line 11  schedule.0.drive.supply_power (heat): needs [coil] and [supply]; without them drive with "
             "absorbed_power or surface_field",
         ),
         (
             ', frequency = "3 kHz"',
             "",
-            'line 11  schedule.0.drive: without a [supply] the frequency stands in the drive, add frequency = "3 kHz"',
+            "line 11  schedule.0.drive (heat): without a [supply] the frequency stands in the drive, "
+            'add frequency = "3 kHz"',
         ),
         (
             "[[schedule]]",
@@ -369,7 +371,7 @@ def test_refusal(old: str, new: str, line: str) -> None:
         (
             "[[schedule]]",
             '[[schedule]]\nstage = "hold"\nat = { core = "500 °C" }\nduration = "1 s"\n[[schedule]]',
-            "line 9   schedule.0: a hold needs a frequency before it, put a heat stage first or add a [supply]",
+            "line 9   schedule.0 (hold): a hold needs a frequency before it, put a heat stage first or add a [supply]",
         ),
     ],
 )
@@ -390,7 +392,9 @@ def test_no_schedule() -> None:
     head = FREE.split("[[schedule]]")[0]
     assert _problems(head) == ("schedule: missing, write for example a [[schedule]] table",)
     assert _problems("schedule = []\n" + head) == ("line 1   schedule: is empty, add a [[schedule]] table",)
-    assert _problems("schedule = 3\n" + head) == ("line 1   schedule: '3' is not a list, write [[...]]",)
+    assert _problems("schedule = 3\n" + head) == (
+        "line 1   schedule: '3' is not a list, write [[schedule]] with two brackets",
+    )
 
 
 def test_table_written_as_a_value() -> None:
@@ -416,8 +420,38 @@ def test_all_mistakes_at_once_in_the_order_of_the_file() -> None:
         ("format = 1\n[coil]\ntube = 12 mm # x\n", 'line 3   tube: put the value in quotes: "12 mm"'),
         ("format = 1\nformat = 1\n", "line 2   this key is given a second time: format = 1"),
         ("format = 1\n[coil\n", "line 2   this is not TOML: expected ']' at the end of a table declaration"),
-        ('format = 1\ntitle = "a', "line 2   this is not TOML: unterminated string"),
+        ('format = 1\ntitle = "a', 'line 2   a closing quote is missing: title = "a'),
+        ('title = "a\nformat = 1\n', 'line 1   a closing quote is missing: title = "a'),
+        ("title = 'a\nformat = 1\n", "line 1   a closing quote is missing: title = 'a"),
+        ('d = { s = "60 kW, f = "3 kHz" }\n', 'line 1   a closing quote is missing: d = { s = "60 kW, f = "3 kHz" }'),
+        ('power = 60 kW"\n', 'line 1   power: put the value in quotes: "60 kW"'),
+        ("[schedule]\na = 1\n[schedule]\na = 2\n", "line 3   write [[schedule]] with two brackets"),
+        ("[coil]\na = 1\n[coil]\na = 2\n", "line 3   the table [coil] is given a second time"),
+        (
+            "[schedule]\na = 1\n[[schedule]]\na = 2\n",
+            "line 3   write every one of them with two brackets: [[schedule]]",
+        ),
     ],
 )
 def test_broken_toml(text: str, line: str) -> None:
     assert _problems(text) == (line,)
+
+
+def test_single_brackets() -> None:
+    assert _problems(FREE.replace("[[schedule]]", "[schedule]")) == (
+        "line 9   schedule: write [[schedule]] with two brackets",
+    )
+    assert _problems("title = { a = 1 }\n" + FREE) == ("line 1   title: a table is not a text, put it in quotes",)
+
+
+def test_a_stage_is_called_as_in_the_report() -> None:
+    text = FREE + '[[schedule]]\nstage = "heat"\nduration = "5 s"\n'
+    assert _problems(text) == (
+        'line 13  schedule.1.drive (heat 2): missing, write for example drive = { supply_power = "60 kW" }',
+    )
+
+
+def test_bare_frequency() -> None:
+    assert _problems(SOUND.replace('"1 kHz"', "10000")) == (
+        'line 18  supply.frequency: write the unit: "10000 Hz" (accepted: Hz, kHz, MHz)',
+    )

@@ -58,3 +58,11 @@ def test_a_material_of_ones_own_can_be_shown(call):
     result = call("material", "show", "mine.toml")
     assert result.exit_code == 0
     assert "conductivity" in result.stdout
+
+
+def test_check_takes_changes(call):
+    result = call("check", "plate.toml", "--set", "schedule.0.until.mean=200 °C")
+    assert "hot, 200 °C" in result.stdout
+    refused = call("check", "plate.toml", "--set", "workpiece.thickness=25")
+    assert (refused.exit_code, refused.stdout) == (2, "")
+    assert refused.stderr.startswith("--set    workpiece.thickness: ")

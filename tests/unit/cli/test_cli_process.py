@@ -97,3 +97,41 @@ def test_progress_on_a_terminal_and_an_interrupt_from_it(tmp_path):
     assert process.returncode == 130
     assert "Interrupted at" in stdout
     assert json.loads((tmp_path / "results/tube/summary.json").read_text())["status"] == "interrupted"
+
+
+@pytest.mark.skipif(not os.path.exists("/dev/full"), reason="needs a full device")
+@pytest.mark.parametrize("arguments", [("material", "show", "c45"), ("run", "heater.toml", "--quiet"), ("--help",)])
+def test_an_answer_that_cannot_be_printed_is_one_sentence(tmp_path, arguments):
+    (tmp_path / "heater.toml").write_text(starter("heater"), encoding="utf-8")
+    with open("/dev/full", "w") as full:
+        done = subprocess.run(
+            [*COMMAND, *arguments], cwd=tmp_path, stdout=full, stderr=subprocess.PIPE, text=True, check=False
+        )
+    assert done.returncode == 2
+    assert done.stderr == "the answer cannot be printed (No space left on device)\n"
+
+
+def test_a_reader_that_has_enough_is_no_error(tmp_path):
+    process = subprocess.Popen(
+        [*COMMAND, "material", "show", "c45", "--json"], stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True
+    )
+    assert process.stdout is not None and process.stderr is not None
+    process.stdout.close()
+    assert process.stderr.read() == ""
+    process.stderr.close()
+    assert process.wait(60) == 0
+
+
+def test_an_interrupt_while_starting_ends_with_130():
+    code = """
+import sys
+class Stop:
+    def find_spec(self, name, *_):
+        if name == "typer":
+            raise KeyboardInterrupt
+sys.meta_path.insert(0, Stop())
+from thermal.__main__ import main
+main()
+"""
+    done = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=False)
+    assert (done.returncode, done.stdout, done.stderr) == (130, "", "interrupted, nothing was written\n")

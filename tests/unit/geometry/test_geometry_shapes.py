@@ -85,13 +85,14 @@ def test_plate(sizes, thickness, width, length):
     assert_allclose(mesh.perimeter, 2.0 * width, rtol=1e-12)
     assert_allclose(mesh.faces["outer"].area, 2.0 * width * length, rtol=1e-12)
     # Two end faces and two narrow edges.
-    assert_allclose(mesh.faces["ends"].area.sum(), 2.0 * thickness * (width + length), rtol=1e-12)
+    assert_allclose(mesh.faces["ends"].area.sum(), 2.0 * thickness * width, rtol=1e-12)
+    assert_allclose(mesh.faces["edges"].area.sum(), 2.0 * thickness * length, rtol=1e-12)
     assert_allclose(mesh.area, 2.0 * width * length, rtol=1e-12)
 
 
 def test_whole_surface_of_a_plate():
     mesh = plate(np.linspace(0.0, 0.01, 5), 0.3, 0.5)
-    surface = mesh.faces["outer"].area.sum() + mesh.faces["ends"].area.sum()
+    surface = sum(face.area.sum() for face in mesh.faces.values())
     assert_allclose(surface, 2.0 * (0.02 * 0.3 + 0.3 * 0.5 + 0.5 * 0.02), rtol=1e-12)
 
 

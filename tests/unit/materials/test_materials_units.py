@@ -133,3 +133,7 @@ def test_unknown_unit_for_display() -> None:
     with pytest.raises(UnitError, match="unknown unit 'furlong'"):
         display(1.0, "furlong")
     assert accepted("heat_transfer") == "W/(m2 K), kW/(m2 K)"
+
+
+def test_the_ordinal_sign_is_read_as_a_degree_sign() -> None:
+    assert quantity("20 \u00baC", "temperature") == quantity("20 °C", "temperature")

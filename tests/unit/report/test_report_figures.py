@@ -1,10 +1,11 @@
 import itertools
 
+import numpy as np
 import pytest
 from matplotlib.text import Text
 
 from thermal.report.figures import curves_figure
-from thermal.report.labels import spread_out
+from thermal.report.labels import cost_of_place, spread_out
 from thermal.report.style import STYLES, styled
 
 LONG = "A long title about the bar, the coil and the press that goes on " * 4
@@ -77,7 +78,7 @@ def texts(run, **_):
 
 def test_targets_stages_and_curves_are_named(run_of):
     found = texts(run_of("tube"))
-    for words in ("target core 900 °C", "hold surface 900 °C", "Curie point 768 °C", "heat", "hold", "transfer"):
+    for words in ("target core, hold surface 900 °C", "Curie point 768 °C", "heat", "hold", "transfer"):
         assert words in found
     assert {name for name in STYLES if any(text.startswith(f"{name} ") for text in found)} == set(STYLES)
     assert not any("solidus" in text for text in found)
@@ -124,3 +125,62 @@ def test_intervals_stay_inside_and_apart():
 
 def test_what_cannot_fit_is_none():
     assert spread_out([1.0, 2.0], [6.0, 6.0], 0.0, 10.0) is None
+
+
+def test_a_run_without_power_has_no_panel_for_it(run_of):
+    run = run_of("tube", schedule='[{stage = "transfer", duration = "5 s"}]')
+    found = texts(run)
+    assert "power, kW" not in found
+    assert "grey: power off" not in found
+    assert "time, s" in found
+    assert "power, kW" in texts(run_of("tube"))
+
+
+def test_an_interrupted_run_is_marked_in_the_title(run_of):
+    assert any(text.startswith("Interrupted, incomplete: ") for text in texts(run_of("tube", stop_after=5.0)))
+
+
+BOX = (10.0, 10.0, 30.0, 20.0)
+FAR = 1000.0
+
+
+@pytest.mark.parametrize(
+    ("curve", "struck"),
+    [
+        ([(0.0, 15.0), (100.0, 15.0)], 1),
+        ([(0.0, 0.0), (19.0, 0.0), (21.0, FAR), (100.0, FAR)], 1),
+        ([(0.0, 5.0), (100.0, 5.0)], 0),
+        ([(0.0, 0.0), (9.0, 0.0), (9.5, 40.0), (100.0, 40.0)], 0),
+    ],
+)
+def test_a_curve_through_a_label_is_noticed(curve, struck):
+    assert cost_of_place(BOX, [np.array(curve)], [], [], [])[:3] == (0, struck, 0)
+
+
+def test_other_lines_and_labels_are_noticed():
+    assert cost_of_place(BOX, [], [15.0, 40.0], [5.0, 20.0], [(25.0, 15.0, 60.0, 25.0)])[:3] == (1, 1, 1)
+
+
+def test_more_room_is_better():
+    near, far = ([np.array([(0.0, y), (100.0, y)])] for y in (22.0, 30.0))
+    assert cost_of_place(BOX, far, [], [], []) < cost_of_place(BOX, near, [], [], [])
+
+
+@pytest.mark.parametrize(
+    ("kind", "changes"),
+    [
+        ("heater", {"schedule__0__until": '{surface = "300 °C", core = "290 °C"}'}),
+        ("tube", {"schedule__0__until": '{core = "765 °C"}', "schedule__1__at": '{surface = "765 °C"}'}),
+    ],
+)
+def test_no_curve_strikes_through_a_level_label(run_of, kind, changes):
+    with styled():
+        figure = curves_figure(*run_of(kind, **changes))
+        figure.canvas.draw()
+        axes = figure.axes[0]
+        labels = [text for text in axes.texts if text.get_text().startswith(("target", "hold", "Curie", "solidus"))]
+        assert len(labels) >= 2
+        curves = [axes.transData.transform(line.get_xydata()) for line in axes.lines[:4]]
+        for label in labels:
+            box = label.get_window_extent()
+            assert cost_of_place((box.x0, box.y0, box.x1, box.y1), curves, [], [], [])[1] == 0

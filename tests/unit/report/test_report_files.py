@@ -1,12 +1,17 @@
 import csv
 import json
 import os
+import shutil
 from pathlib import Path
 
 import numpy as np
 import pytest
 
-from thermal.case import from_text
+import materials
+from thermal.build import build
+from thermal.case import from_text, load_case
+from thermal.case.starter import starter
+from thermal.loop import run, run_case
 from thermal.report import files
 from thermal.report.curves import round_interval
 from thermal.report.files import FILES, OutputError, demand_place, write_results
@@ -217,7 +222,7 @@ def test_a_file_in_the_place_is_refused(tmp_path):
 def test_a_folder_without_permission_is_refused(tmp_path):
     tmp_path.chmod(0o500)
     try:
-        with pytest.raises(OutputError, match="does not allow it"):
+        with pytest.raises(OutputError, match=r"cannot be written \(Permission denied\)"):
             demand_place(tmp_path / "x", force=False)
     finally:
         tmp_path.chmod(0o700)
@@ -230,3 +235,43 @@ def test_a_folder_the_system_refuses_is_one_sentence(run_of, tmp_path, monkeypat
     monkeypatch.setattr(Path, "mkdir", refuse)
     with pytest.raises(OutputError, match=r"x: cannot be written \(Permission denied\)$"):
         write_results(tmp_path / "x", *run_of("heater"))
+
+
+def test_the_place_is_tried_before_the_run(tmp_path, monkeypatch):
+    demand_place(tmp_path / "a" / "x", force=False)
+    assert os.listdir(tmp_path) == []
+
+    def full(*_, **__):
+        raise OSError(28, "No space left on device")
+
+    monkeypatch.setattr(Path, "mkdir", full)
+    with pytest.raises(OutputError, match=r"x: cannot be written \(No space left on device\)$"):
+        demand_place(tmp_path / "x", force=False)
+
+
+@pytest.mark.parametrize("given", ["my-steel.toml", "steels/my-steel.toml"])
+def test_a_material_of_ones_own_is_kept_with_the_case(tmp_path, given):
+    own = tmp_path / given
+    own.parent.mkdir(exist_ok=True)
+    shutil.copyfile(Path(materials.__file__).parent / "data" / "steel" / "steel-c45.toml", own)
+    changes = {"schedule.0.until.surface": "60 °C"}
+    text = starter("heater").replace('"steel-c45"', f'"{given}"')
+    case = from_text(text, tmp_path, changes)
+    setup = build(case)
+    history = run(setup)
+    folder = tmp_path / "x"
+    write_results(folder, setup, case, history)
+    write_results(folder, setup, case, history, force=True)
+    own.unlink()
+    assert sorted(os.listdir(folder)) == sorted([*FILES, "my-steel.toml"])
+    again = load_case(folder / "case.toml")
+    assert run_case(again).time[-1] == history.time[-1]
+
+
+def test_a_material_called_like_a_result_gets_another_name(tmp_path):
+    shutil.copyfile(Path(materials.__file__).parent / "data" / "steel" / "steel-c45.toml", tmp_path / "case.toml")
+    text = starter("heater").replace('"steel-c45"', '"case.toml"')
+    case = from_text(text, tmp_path, {"schedule.0.until.surface": "60 °C"})
+    setup = build(case)
+    write_results(tmp_path / "x", setup, case, run(setup))
+    assert load_case(tmp_path / "x" / "case.toml").workpiece.material == "material-case.toml"

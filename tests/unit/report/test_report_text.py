@@ -1,3 +1,6 @@
+import math
+import sys
+
 import pytest
 
 from materials import get, names
@@ -7,8 +10,9 @@ from thermal.case.starter import KINDS, starter
 from thermal.report.advice import cautions, expectation, remarks
 from thermal.report.materials import material_list_text, material_text
 from thermal.report.plan import conditions, plan_text
-from thermal.report.tables import energy_table, result_text, stage_table
-from thermal.report.text import WIDTH, columns
+from thermal.report.tables import energy_table, peak_table, result_text, stage_table
+from thermal.report.text import WIDTH, columns, paragraph, width
+from thermal.report.words import piece_in_words
 
 READINGS = "[" + ", ".join(f'{{name = "thermocouple-number-{i}", depth = "{i} mm"}}' for i in range(5)) + "]"
 STAGES = "[" + ", ".join(f'{{stage = "transfer", duration = "{i + 1} s"}}' for i in range(12)) + "]"
@@ -70,7 +74,7 @@ def test_columns_that_do_not_fit_go_below():
 
 
 def test_a_long_label_is_cut():
-    assert columns([["a" * 60, "1"]]) == f"  {'a' * 43}…  1"
+    assert columns([["a" * 60, "1"]]) == f"  {'a' * 47}…  1"
 
 
 def test_data_held_beyond_their_range_are_noted(run_of):
@@ -119,12 +123,12 @@ def test_a_single_piece_is_told_to_be_an_average(run_of):
 
 
 def test_cautions_follow_what_the_case_holds(run_of):
-    heater = " ".join(cautions(*run_of("heater")[::2]))
+    heater = " ".join(each.full for each in cautions(*run_of("heater")[::2]))
     for word in ("Hot metal", "pacemakers", "prove dead", "Cooling water", "Fumes", "not an assessment"):
         assert word in heater
     assert "Near melting" not in heater
     assert "Holding" not in heater
-    assert "Holding" in " ".join(cautions(*run_of("tube")[::2]))
+    assert any(each.full.startswith("Holding") for each in cautions(*run_of("tube")[::2]))
     cold = cautions(*run_of("heater", schedule='[{stage = "transfer", duration = "5 s"}]')[::2])
     assert len(cold) == 1
 
@@ -135,7 +139,7 @@ def test_aluminium_near_melting_is_told(run_of):
         workpiece__material="aluminium-6082",
         schedule__0__until='{surface = "500 °C"}',
     )
-    told = " ".join(cautions(setup, history))
+    told = " ".join(each.full for each in cautions(setup, history))
     assert "aluminium softens and runs without changing colour" in told
     assert "explodes with water" in told
 
@@ -178,3 +182,83 @@ def test_every_material_can_be_shown():
         for datum in material.data:
             assert datum.name in text
         assert max(map(len, text.splitlines())) <= WIDTH
+
+
+HOT = {"workpiece__material": "aluminium-6082", "schedule__0__until": '{surface = "500 °C"}'}
+
+
+def test_notes_stand_under_the_verdict_and_cautions_last(run_of):
+    setup, case, history = run_of("heater", schedule__0__until='{surface = "1240 °C"}')
+    heads = [part.split("\n")[0] for part in result_text(setup, case, history, None).rstrip().split("\n\n")]
+    assert heads[2] == "Notes"
+    assert heads[3] == "At the end of each stage"
+    assert heads[-1].startswith("Cautions")
+
+
+@pytest.mark.parametrize(("kind", "changes"), [("tube", {}), ("heater", HOT), ("heater", {})])
+def test_every_caution_is_one_line(run_of, kind, changes):
+    setup, case, history = run_of(kind, **changes)
+    lines = result_text(setup, case, history, None).rstrip().split("\n\n")[-1].splitlines()[1:]
+    told = cautions(setup, history)
+    assert lines == [f"  - {each.short}" for each in told]
+    assert all(each.short.split()[0].rstrip(":,") == each.full.split()[0].rstrip(":,") for each in told[1:])
+
+
+def rows_of(table):
+    return {line.strip().split("  ")[0]: line.split() for line in table.splitlines()}
+
+
+def test_small_energies_are_in_watt_hours(run_of):
+    setup, _, history = run_of("heater")
+    absorbed = history.energy["absorbed"][-1]
+    assert absorbed < 0.1 * 3.6e6
+    rows = rows_of(energy_table(setup, history))
+    assert rows["Wh"] == ["Wh", "%", "kWh/t"]
+    assert float(rows["absorbed in the workpiece"][-3]) == pytest.approx(absorbed / 3600.0, abs=0.006)
+    assert rows_of(energy_table(*run_of("tube")[::2]))["kWh"][0] == "kWh"
+
+
+def test_rows_without_energy_are_left_out(run_of):
+    setup, _, history = run_of("heater", schedule='[{stage = "transfer", duration = "5 s"}]')
+    assert "absorbed" not in energy_table(setup, history)
+    assert "lost in the tank" not in energy_table(*run_of("tube")[::2])
+
+
+def test_a_row_loses_at_its_end_faces_in_the_open_only(run_of):
+    row = energy_table(*run_of("tube", workpiece__neighbours="touching")[::2])
+    assert "lost at the end faces, in the open (transfer)" in row
+    assert "in the open" not in energy_table(*run_of("tube")[::2])
+
+
+def test_peak_values_say_whose_they_are(run_of):
+    setup, _, history = run_of("tube", workpiece__neighbours="touching")
+    rows = rows_of(peak_table(setup, history))
+    on = history.absorbed_power > 0.0
+    efficiency = 100.0 * history.absorbed_power[on] / (setup.share * history.supply_power[on])
+    told = rows["electrical efficiency (absorbed/supply), %"]
+    assert told[-4:-2] == ["whole", "coil"]
+    assert [float(each) for each in told[-2:]] == pytest.approx([efficiency.max(), efficiency.min()], abs=0.051)
+    assert setup.share < 1.0
+    assert "this piece" in " ".join(rows["absorbed power, kW"])
+    area = math.pi * 6.0 * setup.mass / setup.material.density / (math.pi / 4.0 * (0.06**2 - 0.05**2)) * 100.0
+    assert float(rows["absorbed per surface, W/cm2"][-2]) == pytest.approx(history.absorbed_power.max() / area, abs=0.1)
+
+
+def test_low_frequencies_are_in_hertz(run_of):
+    setup, case, history = run_of("tube", supply__frequency="800 Hz", schedule__0__until='{core = "60 °C"}')
+    assert rows_of(peak_table(setup, history))["frequency, Hz"][-1] == "800"
+    assert "; 800 Hz; coil" in piece_in_words(setup, case)
+    assert "; 10 kHz; coil" in piece_in_words(*run_of("tube")[:2])
+
+
+@pytest.mark.parametrize(("terminal", "expected"), [(40, 60), (72, 72), (200, 100)])
+def test_the_width_follows_a_terminal(monkeypatch, terminal, expected):
+    monkeypatch.setattr(sys.stdout, "isatty", lambda: True, raising=False)
+    monkeypatch.setenv("COLUMNS", str(terminal))
+    assert width() == expected
+    assert max(map(len, paragraph("word " * 100).splitlines())) <= expected
+
+
+def test_elsewhere_the_width_is_always_the_same(monkeypatch):
+    monkeypatch.setenv("COLUMNS", "72")
+    assert width() == WIDTH

@@ -2,7 +2,7 @@ import re
 
 import pytest
 
-from thermal.results.verdict import power, seconds, sentence, spans_in_words
+from thermal.results.verdict import hertz, power, seconds, sentence, spans_in_words
 
 ALUMINIUM = {"workpiece__material": "aluminium-6082", "workpiece__surface": "oxidised"}
 
@@ -114,7 +114,8 @@ def test_cooling_to_a_target(run_of):
 
 
 @pytest.mark.parametrize(
-    ("time", "text"), [(0.0, "0 s"), (0.426, "0.43 s"), (60.53, "60.5 s"), (60.0, "60 s"), (143.2, "143 s")]
+    ("time", "text"),
+    [(0.0, "0 s"), (0.2404, "240 ms"), (0.9996, "1 s"), (60.53, "60.5 s"), (60.0, "60 s"), (143.2, "143 s")],
 )
 def test_seconds(time, text):
     assert seconds(time) == text
@@ -127,3 +128,26 @@ def test_power():
 def test_many_spans_are_summed():
     assert spans_in_words([(0.0, 1.0), (2.0, 4.0), (6.0, 7.0)]) == "for 4 s in all between 0 s and 7 s"
     assert spans_in_words([(30.0, 30.001)]) == "for a moment at 30 s"
+
+
+def test_a_target_met_beyond_the_solidus_is_no_success(run_of):
+    run = run_of(
+        "heater",
+        **ALUMINIUM,
+        schedule__0__drive='{absorbed_power = "4 kW", frequency = "100 kHz"}',
+        schedule__0__until='{core = "570 °C"}',
+    )
+    text = told(run, status="limit")
+    met = seconds(run[2].stages[0].end)
+    assert run[2].stages[0].reason == "target"
+    assert re.match(
+        rf"The hottest point passes the solidus 575 °C at [\d.]+ m?s, before the core reaches 570 °C \({met}\): "
+        r"the piece burns or melts there\. Hottest point ",
+        text,
+    )
+    assert "Reaches" not in text
+
+
+@pytest.mark.parametrize(("value", "text"), [(800.0, "800 Hz"), (1e3, "1 kHz"), (2.5e5, "250 kHz")])
+def test_hertz(value, text):
+    assert hertz(value) == text
