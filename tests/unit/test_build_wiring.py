@@ -3,7 +3,7 @@
 Expected numbers are worked out here from the words of the case, the formula written out.
 """
 
-from math import cosh, log, pi, sin, sinh, sqrt
+from math import cos, cosh, log, pi, sin, sinh, sqrt
 
 import numpy as np
 import pytest
@@ -12,12 +12,13 @@ from scipy.special import ellipe, ellipk
 
 import materials
 from materials import database
+from thermal.boundary.lining import LiningLoss
 from thermal.build import build
 from thermal.case import from_text
 from thermal.circuit.supply import DirectDrive
 from thermal.control import HoldTemperature
 from thermal.eddy.finite_coil import FluxPath, SectionSource
-from thermal.interfaces import BoundaryLoss
+from thermal.interfaces import BoundaryLoss, Demand
 from thermal.setup import Setup
 
 MU_0 = 1.25663706212e-6
@@ -53,6 +54,10 @@ def path_of(setup: Setup) -> FluxPath:
     path = source_of(setup).path
     assert path is not None
     return path
+
+
+def demand_of(setup: Setup) -> Demand:
+    return setup.stages[0].control.demand({}, 0.0, np.zeros(2))
 
 
 def first_cell(setup: Setup) -> float:
@@ -126,20 +131,16 @@ def test_what_the_terminals_feel_is_what_the_pieces_absorb(
 
 
 def test_coil_copper_at_its_temperature() -> None:
-    # One turn alone is small against the sheet; wall factor by Dowell, both as in the notes on the coil.
+    # Sheet on the bore blended with a lone turn, times Dowell's factor of a wall of 1 mm.
     setup = in_coil("cylinder", wall="1 mm")
     point, _ = setup.supply.operate(setup.source.at(np.full(setup.section.mesh.r.size, 500.0)), demand_of(setup), None)
     skin = sqrt(COPPER / (pi * 3e3 * MU_0))
     sheet = COPPER * pi * 0.065 * 81.0 / (0.12 * skin)
     lone = COPPER * 9.0 * pi * 0.075 / (4.0 * 0.01 * skin)
     v = 2.0 * 1e-3 / skin
-    thin = (sinh(v) + sin(v)) / (cosh(v) - np.cos(v))
+    thin = (sinh(v) + sin(v)) / (cosh(v) - cos(v))
     R = sheet * (1.0 + (1.4 * lone / sheet) ** 3) ** (1.0 / 3.0) * thin
     assert point.coil_loss == pytest.approx(R * 800.0**2, rel=1e-6)
-
-
-def demand_of(setup: Setup):  # type: ignore[no-untyped-def]  # a Demand
-    return setup.stages[0].control.demand({}, 0.0, np.zeros(2))
 
 
 # A piece longer than the coil ---------------------------------------------------------------------------------------
@@ -173,9 +174,15 @@ def names(losses: tuple[BoundaryLoss, ...]) -> list[str]:
     return [loss.name for loss in losses]
 
 
+def lining_of(shape: str) -> LiningLoss:
+    (loss,) = in_coil(shape).losses["coil"]["outer"]
+    assert isinstance(loss, LiningLoss)
+    return loss
+
+
 def test_lining_of_a_plate() -> None:
     # Opening 70 x 50 mm round a plate 20 mm thick with 6 mm of lining: (50 - 20)/2 - 6 = 9 mm of gas.
-    (lining,) = in_coil("plate").losses["coil"]["outer"]
+    lining = lining_of("plate")
     assert (lining.gap, lining.wall, lining.area_ratio) == pytest.approx((0.009, 0.006, 1.0), rel=1e-9)
     assert lining.T_coil == pytest.approx(T_COIL)
 
@@ -183,7 +190,7 @@ def test_lining_of_a_plate() -> None:
 @pytest.mark.parametrize("shape", ["cylinder", "tube"])
 def test_lining_of_a_round_coil(shape: str) -> None:
     # Radii 20, 65/2 - 6 = 26.5 and 32.5 mm; paths R1 ln(R2/R1) and R1 ln(R3/R2) per area of the workpiece.
-    (lining,) = in_coil(shape).losses["coil"]["outer"]
+    lining = lining_of(shape)
     paths = (0.02 * log(26.5 / 20.0), 0.02 * log(32.5 / 26.5), 20.0 / 26.5)
     assert (lining.gap, lining.wall, lining.area_ratio) == pytest.approx(paths, rel=1e-9)
     assert lining.T_coil == pytest.approx(T_COIL)
@@ -268,15 +275,18 @@ def test_a_constant_coefficient_and_the_room_reach_every_face() -> None:
 
 # Stages -------------------------------------------------------------------------------------------------------------
 
-HOLD = '[[schedule]]\nstage = "hold"\nat = {{ surface = "{at} °C" }}\nduration = "9 s"\nresponse = "0.7 s"\nreset = "3 s"'
+HOLD = (
+    '[[schedule]]\nstage = "hold"\nat = {{ surface = "{at} °C" }}\nduration = "9 s"\nresponse = "0.7 s"\nreset = "3 s"'
+)
 
 
 @pytest.mark.parametrize(
     ("at", "cp", "k"),
     [
-        # EN 1993-1-2 3.4.1.2: 545 + 17820/(t - 731) up to 900 °C, 650 beyond; k of C45 straight between 800 and 1000 °C.
-        (850.0, 545.0 + 17820.0 / 100.0 * log(169.0 / 69.0), 0.5 * (24.7 + 26.8)),
-        (1100.0, 650.0, 0.5 * (26.8 + 29.7)),
+        # EN 1993-1-2 3.4.1.2: 545 + 17820/(t - 731) up to 900 °C, 650 beyond; mean within 50 K either side.
+        # k of C45 straight between its values at 800, 1000 and 1200 °C.
+        (850.0, 545.0 + 17820.0 / 100.0 * log(169.0 / 69.0), 0.75 * 24.7 + 0.25 * 26.8),
+        (1100.0, 650.0, 0.5 * 26.8 + 0.5 * 29.7),
     ],
 )
 @pytest.mark.parametrize(
@@ -289,9 +299,8 @@ def test_what_a_hold_knows_of_the_piece(
     stage = built(coil_case(shape, True, "none") + HEAT + HOLD.format(at=at)).stages[1]
     control = stage.control
     assert isinstance(control, HoldTemperature)
-    k_at = k - 0.025 * (26.8 - 24.7) / 0.1 * 0.0 if at == 1100.0 else 24.7 + 0.25 * (26.8 - 24.7)
     assert control.capacity == pytest.approx(C45 * area * 0.1 * cp, rel=5e-4)
-    assert control.lag == pytest.approx(section**2 * C45 * cp / (2.5 * k_at), rel=5e-4)
+    assert control.lag == pytest.approx(section**2 * C45 * cp / (2.5 * k), rel=5e-4)
     assert (control.reading, control.response, control.reset) == ("surface", 0.7, 3.0)
     assert control.set_point == control.ceiling == pytest.approx(at + 273.15)
     assert (stage.longest, stage.supply) == (9.0, None)
@@ -325,8 +334,8 @@ def test_a_hold_without_a_coil_uses_no_more_than_the_heating_before_it() -> None
 
 
 def graded(section: float, depth: float) -> float:
-    """Outermost cell [m]: a sixth of the skin depth, growing by 15 % up to 1/40 of the section, scaled to fit."""
-    sizes = [depth / 6.0]
+    """Outermost cell [m]: a sixth of the skin depth or 1/60 of the section, growing by 15 % up to 1/40, made to fit."""
+    sizes = [min(depth / 6.0, section / 60.0)]
     while sum(sizes) < section:
         sizes.append(min(sizes[-1] * 1.15, section / 40.0))
     return sizes[0] * section / sum(sizes)
@@ -340,10 +349,8 @@ def test_first_cell_at_a_given_field(shape: str, section: float, initial: str, r
     mu_r = float(materials.get("steel-c45").magnetics.mu_r(np.array([sqrt(2.0) * 30e3]), T)[0])
     assert mu_r == 1.0 if initial == "900 °C" else mu_r > 10.0
     depth = sqrt(resistivity / (pi * 200e3 * MU_0 * mu_r))
-    assert depth / 6.0 < section / 60.0 or initial == "900 °C"
     text = drive_case(shape, 'surface_field = "30 kA/m"', "200 kHz", SECOND, initial=initial)
-    expected = graded(section, min(depth, section / 10.0))
-    assert first_cell(built(text)) == pytest.approx(expected, rel=1e-9)
+    assert first_cell(built(text)) == pytest.approx(graded(section, depth), rel=1e-9)
 
 
 @pytest.mark.parametrize("turned", [False, True])
@@ -357,8 +364,8 @@ def test_the_first_cell_suits_the_smallest_skin_depth_of_all_drives(turned: bool
 
 def test_the_first_cell_in_a_coil_follows_the_field_it_makes() -> None:
     # The same field by two ways of asking for it: as such, and as the coil current that makes it.
-    by_field = built(coil_case("cylinder", True, "none", "100 kHz") + HEAT.replace("coil_current", "surface_field")
-                     .replace("800 A", "40 kA/m"))
+    as_field = HEAT.replace("coil_current", "surface_field").replace("800 A", "40 kA/m")
+    by_field = built(coil_case("cylinder", True, "none", "100 kHz") + as_field)
     T = np.full(by_field.section.mesh.r.size, T_ROOM)
     point, _ = by_field.supply.operate(by_field.source.at(T), demand_of(by_field), None)
     amps = f"{point.coil_current_rms!r} A"

@@ -189,7 +189,12 @@ def _settled(history: History, end: StageEnd, stop: Stop, readings: dict[str, fl
     rest = celsius(readings[names[0]]) if names else f"{abs(readings['spread']):.0f} K"
     limit = history.limit[end.last]
     giver = "the drive" if limit is None else f"the {LIMIT_WORDS[limit]}"
-    given, lost = float(history.absorbed_power[end.last]), float(history.loss_power[end.last])
+    # Over the last step: where a piece rests on its Curie point, the power of an instant swings with the last millikelvin.
+    i = end.last
+    step = float(history.time[i] - history.time[i - 1])
+    given = float(history.energy["absorbed"][i] - history.energy["absorbed"][i - 1]) / step
+    losses = (account for name, account in history.energy.items() if name.startswith("loss: "))
+    lost = sum(float(account[i] - account[i - 1]) for account in losses) / step
     return (
         f"cannot reach {goal}: it settles at {rest}, where {giver} leaves {power(given)} against {power(lost)} of loss"
     )
