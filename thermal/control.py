@@ -1,11 +1,14 @@
 """What a stage asks of the supply, as a pure function of the state and one memory."""
 
+import math
 from dataclasses import dataclass
 from typing import Protocol
 
 import numpy as np
 
 from thermal.interfaces import Array, Demand
+
+RESPONSES_A_STEP = 20.0
 
 
 class Control(Protocol):
@@ -24,6 +27,11 @@ class Control(Protocol):
         """
         ...
 
+    @property
+    def longest_step(self) -> float:
+        """Longest step [s] in which its answer stays small enough to be followed."""
+        ...
+
     def demand(self, readings: dict[str, float], loss: float, memory: Array) -> Demand:
         """Demand at readings [K], present loss [W] and memory (2,): a shift of the set point [K] and a power [W]."""
         ...
@@ -40,6 +48,7 @@ class FixedDrive:
     fixed: Demand
     needs_readings: bool = False
     gain: tuple[str, float, float] = ("surface", 0.0, 1.0)
+    longest_step: float = math.inf
 
     def demand(self, readings: dict[str, float], loss: float, memory: Array) -> Demand:
         """The demand."""
@@ -90,6 +99,11 @@ class HoldTemperature:
         shift = (self.set_point - readings[self.reading]) / self.lag if self._inside and wanted < self.ceiling else 0.0
         rates = np.array([shift, self.capacity * off / (self.response * self.reset)])
         return rates if clipped == 0 else np.where(rates * clipped < 0.0, rates, 0.0)
+
+    @property
+    def longest_step(self) -> float:
+        """Twenty times the response: beyond that, the stages of a step ask for more than the supply has."""
+        return RESPONSES_A_STEP * self.response
 
     @property
     def _inside(self) -> bool:

@@ -279,7 +279,7 @@ class Stepper:
         """
         rejected = 0
         while True:
-            length = min(step, most)
+            length = min(step, most, self.stage.control.longest_step)
             if most - length < 0.1 * length:
                 length = most
             try:

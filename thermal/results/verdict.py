@@ -189,7 +189,7 @@ def _settled(history: History, end: StageEnd, stop: Stop, readings: dict[str, fl
     rest = celsius(readings[names[0]]) if names else f"{abs(readings['spread']):.0f} K"
     limit = history.limit[end.last]
     giver = "the drive" if limit is None else f"the {LIMIT_WORDS[limit]}"
-    # Over the last step: where a piece rests on its Curie point, the power of an instant swings with the last millikelvin.
+    # Over the last step: of a piece that rests on its Curie point, the power at an instant swings with a millikelvin.
     i = end.last
     step = float(history.time[i] - history.time[i - 1])
     given = float(history.energy["absorbed"][i] - history.energy["absorbed"][i - 1]) / step
