@@ -68,19 +68,18 @@ class RadialSolver:
         self.mesh = mesh
         edges = mesh.edges
         inner, outer = edges[:-1], edges[1:]
-        self._h = outer - inner
+        self._minus_h = inner - outer
         if mesh.kind == "cylindrical":
             self._inner, self._outer = inner, outer
-            self._curved = 0.5 * self._h
             self._per_volume = 1.0 / (0.5 * (outer**2 - inner**2))
             self._surface = float(outer[-1])
             self._bore = 0.5j * MU_0 * float(inner[0]) ** 2
         else:
             self._inner = self._outer = np.ones_like(inner)
-            self._curved = np.zeros_like(inner)
-            self._per_volume = 1.0 / self._h
+            self._per_volume = 1.0 / (outer - inner)
             self._surface = 1.0
             self._bore = 0j
+        self._curved = mesh.kind == "cylindrical"
         self._g_twice = self._inner + self._outer
 
     def profile(self, resistivity: Array, mu_r: Array, frequency: float) -> Profile:
@@ -94,15 +93,19 @@ class RadialSolver:
         """
         omega = 2.0 * math.pi * frequency
         gamma = ((1.0 + 1.0j) * math.sqrt(0.5 * omega * MU_0)) * np.sqrt(mu_r / resistivity)
-        t = gamma * self._h
-        e = np.exp(-t)
-        rho_gamma = resistivity * gamma
-        half = (1.0 - e) / (1.0 + e)
-        k = rho_gamma * self._g_twice * (e / (1.0 - e * e))
-        rho_half = rho_gamma * half
-        bend = self._curved * half / t
-        d_inner = rho_half * (self._inner + bend)
-        d_outer = rho_half * (self._outer - bend)
+        e = np.exp(gamma * self._minus_h)
+        near = 1.0 - e
+        scale = resistivity * gamma / (1.0 + e)
+        # rho gamma csch(t) g and rho gamma tanh(t/2) with t = gamma h.
+        k = scale * e * self._g_twice / near
+        half = scale * near
+        d_inner = half * self._inner
+        d_outer = half * self._outer
+        if self._curved:
+            # rho gamma tanh(t/2) h phi/4 with phi = tanh(t/2)/(t/2): the bending of the layer, to first order.
+            bend = half * half * ((-0.5j / (omega * MU_0)) / mu_r)
+            d_inner += bend
+            d_outer -= bend
 
         # Solve for the shortfall u = 1 - H/H_s: its right-hand side holds only the induced terms, so that weak
         # shielding (a << delta) keeps full relative accuracy.
