@@ -11,6 +11,7 @@ from materials.magnetics import Magnetics
 from materials.material import Material
 from materials.property import Property
 from materials.source import Source
+from thermal.build import interpolated
 from thermal.conduction.assemble import EnthalpyTable, Section
 from thermal.control import Control, FixedDrive
 from thermal.geometry.mesh import Mesh
@@ -187,7 +188,7 @@ class Problem:
         return Setup(
             title="by hand",
             material=self.material,
-            section=Section(self.mesh, table, self.conductivity or self.material.conductivity),
+            section=Section(self.mesh, table, self.conductivity or interpolated(self.material.conductivity)),
             sampler=Sampler.of(self.mesh),
             source=self.source or nothing,
             supply=self.supply,
