@@ -90,7 +90,7 @@ def test_area_and_perimeter_of_the_piece(shape: str, enclosed: float, perimeter:
     path = path_of(in_coil(shape))
     assert path.enclosed == pytest.approx(enclosed, rel=1e-12)
     assert path.perimeter == pytest.approx(perimeter, rel=1e-12)
-    assert (path.turns, path.length) == (9.0, pytest.approx(0.12))
+    assert (path.turns, path.length) == pytest.approx((9.0, 0.12), rel=1e-12)
 
 
 @pytest.mark.parametrize("wall", ["1 mm", "4 mm"])
