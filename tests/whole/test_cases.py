@@ -4,7 +4,7 @@ from pathlib import Path
 
 import pytest
 
-from thermal import from_text, load_case
+from thermal import from_text, load_case, run_case
 from thermal.build import build
 from thermal.case.starter import KINDS, starter
 from thermal.loop import run
@@ -66,3 +66,29 @@ def test_slug_behaves_as_aluminium():
     # Coil efficiency of aluminium: 0.35-0.55 (common practice, cold to 450 °C).
     efficiency = 1.0 - history.coil_loss[heating] / history.supply_power[heating]
     assert 0.35 < efficiency.min() and efficiency.max() < 0.62
+
+
+def test_a_piece_that_has_cooled_may_be_reheated_below_its_initial_temperature():
+    history = run_case(
+        from_text(
+            """format = 1
+[workpiece]
+shape = "cylinder"
+diameter = "40 mm"
+length = "100 mm"
+material = "steel-c45"
+emissivity = 0.8
+initial = "900 °C"
+[[schedule]]
+stage = "transfer"
+duration = "600 s"
+[[schedule]]
+stage = "heat"
+drive = { absorbed_power = "10 kW", frequency = "3 kHz" }
+until = { mean = "800 °C" }
+""",
+            Path("."),
+        )
+    )
+    assert history.status == "target"
+    assert history.readings["mean"].min() < 800.0 + 273.15 - 50.0

@@ -138,7 +138,8 @@ def _schedule(case: CaseFile) -> Iterator[Problem]:
                 driven = True
                 if stage.until is not None:
                     yield from _names(case, stage.until, (*path, "until"))
-                    yield from _start(case, stage.until, (*path, "until"), first=index == 0)
+                    if index == 0:
+                        yield from _start(case, stage.until, (*path, "until"))
             case Hold():
                 yield from _names(case, stage.at, (*path, "at"))
                 if not driven:
@@ -180,8 +181,8 @@ def _names(case: CaseFile, targets: Until | At, path: Path) -> Iterator[Problem]
             yield (*path, name), f"no such reading, {near(name, [*type(targets).model_fields, *own])}"
 
 
-def _start(case: CaseFile, until: Until, path: Path, *, first: bool) -> Iterator[Problem]:
-    """A heat stage must have something to heat."""
+def _start(case: CaseFile, until: Until, path: Path) -> Iterator[Problem]:
+    """The first heat stage must have something to heat; later ones may reheat a piece that has cooled."""
     initial = case.workpiece.initial
     known = (*TEMPERATURES, *(reading.name for reading in case.reading))
     for name, target in until.targets.items():
@@ -190,7 +191,7 @@ def _start(case: CaseFile, until: Until, path: Path, *, first: bool) -> Iterator
                 (*path, name),
                 f"{shown(target, '°C')} is not above the initial temperature ({shown(initial, '°C')})",
             )
-    if first and list(until.targets) == ["spread"]:
+    if list(until.targets) == ["spread"]:
         yield (
             (*path, "spread"),
             'holds before heating starts, add a temperature, for example core = "1150 °C"',
