@@ -111,3 +111,12 @@ def p1(tolerance: float) -> Setup:
         tolerance=tolerance,
         frequency=3e3,
     ).setup()
+
+
+def largest_error(history: History, setup: Setup, exact: History) -> float:
+    """[K] ; setup : of the exact run."""
+    # A run may pass the end of the exact one by milliseconds where both end on a temperature.
+    inside = history.time <= exact.time[-1]
+    at = sample(setup, exact, np.zeros(int(inside.sum()), dtype=int), history.time[inside])
+    gaps = [np.abs(history.readings[name][inside] - at.readings[name]).max() for name in ("surface", "core")]
+    return float(max(gaps))

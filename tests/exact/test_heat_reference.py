@@ -7,25 +7,13 @@ Runs at 3e-4 and 1e-4 K differ by 5e-4 K.
 
 from collections.abc import Callable
 
-import numpy as np
 import pytest
-from reference_problems import p1, p1s
+from reference_problems import largest_error, p1, p1s
 
 from thermal.loop import run
-from thermal.results.dense import sample
-from thermal.results.history import History
 from thermal.setup import Setup
 
 TOLERANCES = (0.03, 0.1, 0.3, 1.0)
-
-
-def largest_error(history: History, setup: Setup, exact: History) -> float:
-    """[K] ; setup : of the exact run."""
-    # A run may pass the end of the exact one by milliseconds where both end on a temperature.
-    inside = history.time <= exact.time[-1]
-    at = sample(setup, exact, np.zeros(int(inside.sum()), dtype=int), history.time[inside])
-    gaps = [np.abs(history.readings[name][inside] - at.readings[name]).max() for name in ("surface", "core")]
-    return float(max(gaps))
 
 
 def test_p1s_within_four_tolerances() -> None:
