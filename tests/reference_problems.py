@@ -23,6 +23,8 @@ from thermal.eddy.radial import RadialSolver
 from thermal.geometry.mesh import Mesh
 from thermal.geometry.shapes import cylinder
 from thermal.interfaces import Array, BoundaryLoss, Demand, EddyField, FieldOf
+from thermal.results.dense import sample
+from thermal.results.history import History
 from thermal.schedule import Stop
 from thermal.setup import Setup
 
