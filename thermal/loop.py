@@ -2,6 +2,7 @@
 
 import math
 import time
+from collections import deque
 from collections.abc import Callable, Iterator
 from dataclasses import replace
 
@@ -20,6 +21,9 @@ from thermal.stepper import LANDING, SURFACES, Hottest, Moment, Stepper, account
 
 SETTLED = 1e-3
 """Net heat below this share of what is absorbed counts as settled."""
+
+LATELY = 10
+"""Steps looked back on to tell whether a stage has settled."""
 
 HOPELESS = 1e3
 """A target so many times farther off than the stage has taken is out of reach."""
@@ -166,8 +170,7 @@ class _Watch:
         self.stage = stage
         self._losses = [i for i, name in enumerate(accounts) if name.startswith("loss: ")]
         self.limits: dict[str, list[tuple[float, float]]] = {}
-        self._approach: float | None = None
-        self._distance: float | None = None
+        self._lately: deque[tuple[float, float, float, float]] = deque(maxlen=LATELY)
 
     def see(self, start: float, end: float, limit: str | None) -> None:
         """A step from start to end ran at a limit (or at none)."""
@@ -182,25 +185,29 @@ class _Watch:
     def settled(self, gained: Array, step: float, distance: float, elapsed: float) -> bool:
         """Whether the workpiece has come to rest short of its target.
 
-        Over the step, net heat must be below 0.1 % of what is absorbed, and the approach to the target must die out
-        before it gets there if it goes on slowing down as it did over the last two steps, or would take a thousand
-        times as long as the stage has taken so far.
+        Over the last ten steps, net heat must be below 0.1 % of what is absorbed, and the approach to the target must
+        die out before it gets there if it goes on slowing down as it did from their first half to their second, or
+        would take a thousand times as long as the stage has taken so far. (Ten, not one: where a piece rests on its
+        Curie point, the heat of single steps swings.)
 
         gained : (p,) [J] of the energy accounts over the step ; distance : [K] ; elapsed : [s] since the stage began.
         """
-        absorbed, lost = float(gained[0]), float(gained[self._losses].sum())
-        earlier, self._distance = self._distance, distance
-        last, self._approach = self._approach, None if earlier is None else (earlier - distance) / step
-        if abs(absorbed - lost) > SETTLED * max(absorbed, lost):
+        self._lately.append((float(gained[0]), float(gained[self._losses].sum()), step, distance))
+        if len(self._lately) < LATELY:
             return False
-        if last is None or self._approach is None:
+        absorbed, lost, steps, distances = np.array(self._lately).T
+        if abs(absorbed.sum() - lost.sum()) > SETTLED * max(absorbed.sum(), lost.sum()):
             return False
-        if self._approach * HOPELESS * elapsed <= distance:
+        middle = LATELY // 2
+        times = np.cumsum(steps)
+        first = (distances[0] - distances[middle]) / (times[middle] - times[0])
+        second = (distances[middle] - distances[-1]) / (times[-1] - times[middle])
+        if second * HOPELESS * elapsed <= distance:
             return True
-        if self._approach >= last:
+        if second >= first:
             return False
-        decay = step / math.log(last / self._approach)
-        return self._approach * decay < distance
+        decay = 0.5 * (times[-1] - times[0]) / math.log(first / second)
+        return bool(second * decay < distance)
 
     def record(self, start: float, end: float, reason: str, met: bool) -> StageRecord:
         """The stage as it happened."""

@@ -13,6 +13,7 @@ import numpy.typing as npt
 
 from thermal.constants import MU_0
 from thermal.eddy.cell_mean import CellMean
+from thermal.eddy.exact import skin_depth
 from thermal.eddy.radial import Magnetics, Profile, RadialSolver
 from thermal.errors import NoConvergence
 from thermal.geometry.mesh import Mesh
@@ -21,9 +22,10 @@ from thermal.interfaces import EddyField, FieldOf, PropertyOf
 Array = npt.NDArray[np.float64]
 
 
-STEEPNESS = 0.7
-"""Power of mu_r - 1 with which the heat of a cell is taken to go, for the matrix of a step only: a half in a thick
-skin, towards two in a thin piece. Stalls on the Curie point need about this much, and more costs steps on the way."""
+STEEPNESS = (0.7, 2.0)
+"""Power of mu_r - 1 with which the heat of a cell is taken to go, for the matrix of a step only, in a section thick and
+thin against the skin depth: a half and two for uniform properties. Stalls on the Curie point need about this much, and
+more costs steps on the way."""
 
 
 @dataclass(frozen=True)
@@ -123,7 +125,13 @@ class SectionSource:
                 )
                 known[frequency] = profile
             heat = profile.heat * H_surface**2
-            fall = None if losing is None else self._gathered(STEEPNESS * heat * (1.0 - 1.0 / profile.mu_r) * losing)
+            fall = (
+                None
+                if losing is None
+                else self._gathered(
+                    heat * (1.0 - 1.0 / profile.mu_r) * losing * self._steepness(resistivity, profile, frequency)
+                )
+            )
             heat = self._gathered(heat)
             power = float(heat @ self.mesh.volume)
             if not math.isfinite(power):
@@ -132,6 +140,12 @@ class SectionSource:
             return EddyField(heat, power, at_terminals, H_surface, profile.mu_r, solves, fall)
 
         return field_of
+
+    def _steepness(self, resistivity: Array, profile: Profile, frequency: float) -> Array:
+        edges = self.mesh.edges
+        depth = skin_depth(resistivity, frequency, profile.mu_r)
+        thick, thin = STEEPNESS
+        return np.asarray(thick + (thin - thick) / (1.0 + ((edges[-1] - edges[0]) / (2.0 * depth)) ** 2))
 
     def _losing(self, T: Array, factor: Array) -> Array | None:
         """Relative fall of the susceptibility with temperature [1/K] in the solver's cells, where it falls."""
