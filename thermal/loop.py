@@ -22,7 +22,7 @@ from thermal.stepper import LANDING, SURFACES, Hottest, Moment, Stepper, account
 SETTLED = 1e-3
 """Net heat below this share of what is absorbed counts as settled."""
 
-LATELY = 10
+LATELY = (3, 10)
 """Steps looked back on to tell whether a stage has settled."""
 
 HOPELESS = 1e3
@@ -170,7 +170,7 @@ class _Watch:
         self.stage = stage
         self._losses = [i for i, name in enumerate(accounts) if name.startswith("loss: ")]
         self.limits: dict[str, list[tuple[float, float]]] = {}
-        self._lately: deque[tuple[float, float, float, float]] = deque(maxlen=LATELY)
+        self._lately: deque[tuple[float, float, float, float]] = deque(maxlen=max(LATELY))
 
     def see(self, start: float, end: float, limit: str | None) -> None:
         """A step from start to end ran at a limit (or at none)."""
@@ -185,20 +185,23 @@ class _Watch:
     def settled(self, gained: Array, step: float, distance: float, elapsed: float) -> bool:
         """Whether the workpiece has come to rest short of its target.
 
-        Over the last ten steps, net heat must be below 0.1 % of what is absorbed, and the approach to the target must
-        die out before it gets there if it goes on slowing down as it did from their first half to their second, or
-        would take a thousand times as long as the stage has taken so far. (Ten, not one: where a piece rests on its
-        Curie point, the heat of single steps swings.)
+        Seen over the last three steps, or over the last ten where the heat of single steps swings (a piece that rests
+        on its Curie point): in their later half net heat must be below 0.1 % of what is absorbed, and the approach to
+        the target must die out before it gets there if it goes on slowing down as it did from the earlier half, or
+        would take a thousand times as long as the stage has taken so far.
 
         gained : (p,) [J] of the energy accounts over the step ; distance : [K] ; elapsed : [s] since the stage began.
         """
         self._lately.append((float(gained[0]), float(gained[self._losses].sum()), step, distance))
-        if len(self._lately) < LATELY:
+        return any(self._at_rest(count, distance, elapsed) for count in LATELY if len(self._lately) >= count)
+
+    def _at_rest(self, count: int, distance: float, elapsed: float) -> bool:
+        absorbed, lost, steps, distances = np.array(self._lately)[-count:].T
+        middle = count // 2
+        later = slice(middle + 1, None)
+        net = abs(float(absorbed[later].sum() - lost[later].sum()))
+        if net > SETTLED * max(absorbed[later].sum(), lost[later].sum()):
             return False
-        absorbed, lost, steps, distances = np.array(self._lately).T
-        if abs(absorbed.sum() - lost.sum()) > SETTLED * max(absorbed.sum(), lost.sum()):
-            return False
-        middle = LATELY // 2
         times = np.cumsum(steps)
         first = (distances[0] - distances[middle]) / (times[middle] - times[0])
         second = (distances[middle] - distances[-1]) / (times[-1] - times[middle])
