@@ -68,7 +68,7 @@ def tube_outer_field(
 ) -> tuple[ComplexArray, ComplexArray]:
     """H(r)/H(outer) and E(r)/H(outer) [ohm] in a tube inside a coil, the flux in the bore counted."""
     delta = float(skin_depth(resistivity, frequency, mu_r))
-    return _annulus(r, inner, outer, resistivity, delta, ("bore", 2.0 * np.pi * frequency))
+    return _annulus(r, inner, outer, resistivity, delta, 2.0 * np.pi * frequency)
 
 
 def tube_bore_field(
@@ -85,7 +85,7 @@ def _annulus(
     outer: float,
     resistivity: float,
     delta: float,
-    bore: tuple[str, float] | None,
+    bore_omega: float | None,
 ) -> tuple[ComplexArray, ComplexArray]:
     gamma = (1.0 + 1.0j) / delta
     radius = np.asarray(r, dtype=float)
@@ -100,12 +100,11 @@ def _annulus(
         return np.asarray(kve(order, z) * np.exp(-(z - gamma * inner)))
 
     # H = A I0 + B K0 ; E = -rho dH/dr with the sign chosen so that E/H is the surface impedance looking inwards.
-    if bore is None:
+    if bore_omega is None:
         rows = np.array([[i_(0, inner), k_(0, inner)], [i_(0, outer), k_(0, outer)]])
         a, b = np.linalg.solve(rows, np.array([1.0, 0.0]))
     else:
-        omega = bore[1]
-        flux = 1j * omega * MU_0 * inner / 2.0
+        flux = 1j * bore_omega * MU_0 * inner / 2.0
         inner_row = [
             resistivity * gamma * i_(1, inner) - flux * i_(0, inner),
             -resistivity * gamma * k_(1, inner) - flux * k_(0, inner),

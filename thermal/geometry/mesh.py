@@ -53,11 +53,6 @@ class Mesh:
     faces: dict[str, Face]
 
     @property
-    def section_area(self) -> float:
-        """Metal cross-section normal to the coil axis [m2]."""
-        return float(self.volume.sum()) / self.length
-
-    @property
     def perimeter(self) -> float:
         """Length of the line along which the section faces the coil [m]."""
         return float(self.faces["outer"].area[0]) / self.length

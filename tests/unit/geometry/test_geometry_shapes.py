@@ -48,7 +48,7 @@ def test_bar(sizes, radius, length):
     section = math.pi * radius**2
     assert mesh.kind == "cylindrical"
     assert_allclose(mesh.volume.sum(), section * length, rtol=1e-12)
-    assert_allclose(mesh.section_area, section, rtol=1e-12)
+    assert_allclose(mesh.volume.sum() / mesh.length, section, rtol=1e-12)
     assert_allclose(mesh.perimeter, 2.0 * math.pi * radius, rtol=1e-12)
     assert_allclose(mesh.faces["outer"].area, 2.0 * math.pi * radius * length, rtol=1e-12)
     assert_allclose(mesh.faces["ends"].area.sum(), 2.0 * section, rtol=1e-12)
@@ -64,7 +64,7 @@ def test_tube(sizes, radius, bore, length):
     sound(mesh)
     section = math.pi * (radius**2 - inner**2)
     assert_allclose(mesh.volume.sum(), section * length, rtol=1e-11)
-    assert_allclose(mesh.section_area, section, rtol=1e-11)
+    assert_allclose(mesh.volume.sum() / mesh.length, section, rtol=1e-11)
     assert_allclose(mesh.perimeter, 2.0 * math.pi * radius, rtol=1e-12)
     assert_allclose(mesh.faces["ends"].area.sum(), 2.0 * section, rtol=1e-11)
     face = mesh.faces["bore"]
@@ -81,7 +81,7 @@ def test_plate(sizes, thickness, width, length):
     assert mesh.kind == "planar"
     assert mesh.width == width
     assert_allclose(mesh.volume.sum(), thickness * width * length, rtol=1e-12)
-    assert_allclose(mesh.section_area, thickness * width, rtol=1e-12)
+    assert_allclose(mesh.volume.sum() / mesh.length, thickness * width, rtol=1e-12)
     assert_allclose(mesh.perimeter, 2.0 * width, rtol=1e-12)
     assert_allclose(mesh.faces["outer"].area, 2.0 * width * length, rtol=1e-12)
     # Two end faces and two narrow edges.
