@@ -20,6 +20,7 @@ from thermal.circuit.supply import CoilSupply, DirectDrive
 from thermal.circuit.winding import Winding, copper_depth, copper_resistivity, usual_wall, wall_factor
 from thermal.conduction.assemble import EnthalpyTable, Section
 from thermal.control import Control, FixedDrive, HoldTemperature
+from thermal.eddy.cell_mean import NARROWEST
 from thermal.eddy.exact import skin_depth
 from thermal.eddy.finite_coil import FluxPath, SectionSource
 from thermal.eddy.radial import RadialSolver
@@ -39,6 +40,7 @@ FIELD_PARTS = 3
 """Field cells in each cell of a magnetic workpiece."""
 
 WALL_FACTOR_WARNING = 1.2
+"""Rise of the coil resistance from a thin wall that is worth a note (common practice)."""
 
 PERMEABILITY = {
     "constant": "one value at every field and temperature",
@@ -62,10 +64,7 @@ def build(case: Case) -> Setup:
     material = workpiece_material(case)
     frequency = frequency_of(case)
     coil = coil_of(case, frequency)
-    assumptions = [
-        *case.defaults_used,
-        f"permeability of {material.key}: {PERMEABILITY[material.magnetics.definition]}",
-    ]
+    assumptions = [*case.defaults_used, *_model_choices(case, material, coil)]
     notes: list[str] = []
 
     covered = _covered(case, coil)
@@ -150,6 +149,24 @@ def interpolated(curve: Property) -> PropertyOf:
 def _covered(case: Case, coil: Coil | None) -> float:
     """Length of the workpiece that is computed [m]: all of it, or what the coil covers of a longer one."""
     return case.workpiece.length if coil is None else min(case.workpiece.length, coil.length)
+
+
+def _model_choices(case: Case, material: Material, coil: Coil | None) -> list[str]:
+    """What the model takes for granted beyond the defaults of the case."""
+    piece = case.workpiece
+    choices = [f"permeability of {material.key}: {PERMEABILITY[material.magnetics.definition]}"]
+    if material.curie_temperature is not None:
+        choices.append(f"Curie point of {material.key}: rounded off by {NARROWEST:g} K on either side (assumption)")
+    if coil is not None and not coil.round:
+        choices.append("coil.opening: end effect of the coil that of a round one of the same area (estimate)")
+    if case.lining is not None and isinstance(piece, Plate):
+        choices.append("narrow edges of the plate: lose heat as in the open, the lining left out there (assumption)")
+    if piece.axis == "vertical" and case.surroundings.h is None:
+        choices.append("end faces: convection of an upright plate, though one looks up and one down (estimate)")
+    for index, stage in enumerate(case.schedule):
+        if isinstance(stage, Hold) and _direct(case, index) is not None:
+            choices.append(f"schedule.{index} (hold): at most what the heating before it used (assumption)")
+    return choices
 
 
 def _remarks(case: Case, coil: Coil, material: Material) -> list[str]:
@@ -278,7 +295,7 @@ def _stage(words: StageWords, material: Material, mass: float, section: float) -
             h = material.caloric.enthalpy(around)
             capacity = mass * float(h[1] - h[0]) / 100.0
             k = float(material.conductivity(np.array([set_point]))[0])
-            # First mode of a wall heated from one side, half its width thick: L^2/(2.5 a).
+            # Slowest mode of a section heated from one side, the core insulated: 4 L^2/(pi^2 a).
             lag = section**2 * material.density * float(h[1] - h[0]) / 100.0 / (2.5 * k)
             control = HoldTemperature(
                 words.at.reading, set_point, capacity, words.response, words.reset, lag, ceiling=set_point

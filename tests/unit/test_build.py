@@ -13,6 +13,8 @@ from thermal.case.starter import starter
 DATA = Path(database.__file__).parent / "data"
 
 BILLET = starter("billet")
+STAGE = '[[schedule]]\nstage = "transfer"'
+HOLD = '[[schedule]]\nstage = "hold"\nat = { surface = "850 °C" }\nduration = "5 s"\n\n'
 
 
 def built(text, folder=Path(".")):
@@ -79,3 +81,25 @@ def test_mass_and_end_of_the_run():
     setup = built(BILLET)
     assert setup.mass == pytest.approx(7845.0 * np.pi * 0.025**2 * 0.2)
     assert setup.T_end == pytest.approx(1495.0 + 273.15)
+
+
+@pytest.mark.parametrize(
+    ("kind", "changes", "said"),
+    [
+        ("billet", (), "Curie point of steel-c45: rounded off by 1 K"),
+        ("plate", (), "end effect of the coil that of a round one"),
+        ("billet", (("initial =", 'axis = "vertical"\ninitial ='),), "upright plate"),
+        ("heater", ((STAGE, HOLD + STAGE),), "schedule.1 (hold): at most what the heating before it used"),
+    ],
+)
+def test_what_the_model_takes_for_granted_is_listed(kind, changes, said):
+    text = starter(kind)
+    for old, new in changes:
+        text = text.replace(old, new)
+    assert any(said in line for line in built(text).assumptions)
+
+
+def test_nothing_is_listed_that_does_not_apply():
+    copper = BILLET.replace("steel-c45", "copper").replace("1150 °C", "700 °C")
+    lines = " ".join(built(copper).assumptions)
+    assert "Curie" not in lines and "upright" not in lines and "(hold)" not in lines and "round one" not in lines

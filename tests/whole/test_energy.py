@@ -4,6 +4,8 @@ Demanded: |stored + lost - absorbed| <= 1e-11 of the largest of the three at eve
 cells, lost from the faces, absorbed from the field; the tests with something left out show that the sum would notice.
 """
 
+from collections.abc import Callable
+
 import numpy as np
 import pytest
 from cases_in_words import coil_case, drive_case
@@ -178,14 +180,20 @@ def test_dropping_a_stage_is_noticed(stage: int, monkeypatch: pytest.MonkeyPatch
     whole = rosenbrock_step
 
     def without(
-        H: Array, extra: Array, first: Rates, matrix: Matrix, volume: Array, step: float, rates: object
+        H: Array,
+        extra: Array,
+        first: Rates,
+        matrix: Matrix,
+        volume: Array,
+        step: float,
+        rates: Callable[[Array, Array], Rates],
     ) -> Step:
         seen = 0
 
         def forgetful(H_stage: Array, extra_stage: Array) -> Rates:
             nonlocal seen
             seen += 1
-            found: Rates = rates(H_stage, extra_stage)  # type: ignore[operator]  # any callable
+            found: Rates = rates(H_stage, extra_stage)
             return Rates(found.heat_flow, np.zeros_like(found.accounts), found.extra) if seen == stage else found
 
         return whole(H, extra, first, matrix, volume, step, forgetful)
@@ -200,11 +208,17 @@ def test_dropping_the_linearised_loss_is_noticed(monkeypatch: pytest.MonkeyPatch
     whole = rosenbrock_step
 
     def without(
-        H: Array, extra: Array, first: Rates, matrix: Matrix, volume: Array, step: float, rates: object
+        H: Array,
+        extra: Array,
+        first: Rates,
+        matrix: Matrix,
+        volume: Array,
+        step: float,
+        rates: Callable[[Array, Array], Rates],
     ) -> Step:
-        done = whole(H, extra, first, matrix, volume, step, rates)  # type: ignore[arg-type]  # any callable
+        done = whole(H, extra, first, matrix, volume, step, rates)
         plain = Matrix(matrix.conductance, matrix.dT_dH, ())
-        loose = whole(H, extra, first, plain, volume, step, rates)  # type: ignore[arg-type]  # any callable
+        loose = whole(H, extra, first, plain, volume, step, rates)
         return Step(done.H, loose.gained, done.extra, done.error)
 
     monkeypatch.setattr("thermal.stepper.rosenbrock_step", without)
