@@ -8,10 +8,10 @@ import time
 from collections.abc import Callable
 
 import numpy as np
-from reference_problems import STEEL, T_START, bar, largest_error, p1, p1s
 from scipy.integrate import solve_ivp
 
 from thermal.constants import STEFAN_BOLTZMANN
+from thermal.crosscheck.reference_problems import STEEL, T_START, bar, largest_error, p1, p1s
 from thermal.interfaces import Array
 from thermal.loop import run
 from thermal.setup import Setup

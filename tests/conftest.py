@@ -1,1 +1,1 @@
-"""Shared by all tests; its place puts this folder on the import path (tools, reference_problems)."""
+"""Shared by all tests; its place puts this folder on the import path (tools)."""

@@ -6,8 +6,9 @@ emissivity 0.8. The conductivity of 1e6 W/(m K) makes the body one temperature. 
 
 import numpy as np
 import pytest
-from tools import Problem, constant_flux, convection, heating, last_of, left_alone, radiation, uniform_edges
+from tools import last_of, uniform_edges
 
+from thermal.crosscheck.problem import Problem, constant_flux, convection, heating, left_alone, radiation
 from thermal.geometry.shapes import cylinder
 from thermal.interfaces import BoundaryLoss
 from thermal.loop import run

@@ -8,9 +8,10 @@ confirms them by differences.
 
 import numpy as np
 import pytest
-from tools import ZERO, Clock, FluxLaw, PrescribedSource, Problem, heating, observed_order, uniform_edges
+from tools import ZERO, Clock, observed_order, uniform_edges
 
 from thermal.conduction.assemble import EnthalpyTable
+from thermal.crosscheck.problem import FluxLaw, PrescribedSource, Problem, heating
 from thermal.geometry.shapes import cylinder
 from thermal.interfaces import Array, Real
 from thermal.setup import Setup

@@ -8,8 +8,8 @@ Runs at 3e-4 and 1e-4 K differ by 5e-4 K.
 from collections.abc import Callable
 
 import pytest
-from reference_problems import largest_error, p1, p1s
 
+from thermal.crosscheck.reference_problems import largest_error, p1, p1s
 from thermal.loop import run
 from thermal.setup import Setup
 

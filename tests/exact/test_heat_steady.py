@@ -8,20 +8,12 @@ from collections.abc import Callable
 
 import numpy as np
 import pytest
-from tools import (
-    PrescribedSource,
-    Problem,
-    convection,
-    heating,
-    last_of,
-    observed_order,
-    uniform_edges,
-    uniform_source,
-)
+from tools import last_of, observed_order, uniform_edges
 
 from materials.magnetics import Magnetics
 from thermal.circuit.supply import DirectDrive
 from thermal.control import FixedDrive
+from thermal.crosscheck.problem import PrescribedSource, Problem, convection, heating, uniform_source
 from thermal.eddy.finite_coil import SectionSource
 from thermal.eddy.radial import RadialSolver
 from thermal.geometry.grading import graded_edges

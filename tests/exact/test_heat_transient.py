@@ -6,22 +6,20 @@ H. S. Carslaw, J. C. Jaeger, Conduction of Heat in Solids, 2nd ed. 1959 (C&J); c
 
 import numpy as np
 import pytest
-from tools import (
-    ZERO,
+from tools import ZERO, last_of, uniform_edges
+
+from thermal.conduction.assemble import EnthalpyTable
+from thermal.crosscheck.problem import (
     PrescribedSource,
     Problem,
     by_hand,
     constant_flux,
     convection,
     heating,
-    last_of,
     left_alone,
     plain_material,
-    uniform_edges,
     uniform_source,
 )
-
-from thermal.conduction.assemble import EnthalpyTable
 from thermal.geometry.shapes import cylinder, plate
 from thermal.loop import run
 

@@ -6,10 +6,11 @@ lengths; the two are extrapolated to zero, as its error is of first order in the
 
 import numpy as np
 import pytest
-from tools import ZERO, PrescribedSource, Problem, convection, heating, plain_material
+from tools import ZERO
 
 from materials.property import Property
 from materials.source import Source
+from thermal.crosscheck.problem import PrescribedSource, Problem, convection, heating, plain_material
 from thermal.geometry.grading import graded_edges
 from thermal.geometry.shapes import cylinder
 from thermal.loop import run

@@ -7,12 +7,13 @@ from math import log
 import numpy as np
 import pytest
 from cases_in_words import coil_case, drive_case
-from tools import Problem, account_gap, convection, heating, last_of, observed_order, uniform_edges, uniform_source
+from tools import account_gap, last_of, observed_order, uniform_edges
 
 from thermal.build import build
 from thermal.case import from_text
 from thermal.circuit.supply import CoilSupply
 from thermal.conduction.step import Matrix
+from thermal.crosscheck.problem import Problem, convection, heating, uniform_source
 from thermal.geometry.shapes import cylinder
 from thermal.interfaces import Array, BoundaryLoss, Demand, EddyField, FieldOf, OperatingPoint
 from thermal.loop import run

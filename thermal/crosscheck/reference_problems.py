@@ -13,12 +13,13 @@ import math
 from dataclasses import dataclass
 
 import numpy as np
-from tools import ZERO, PrescribedSource, Problem, convection, heating, plain_material, radiation
 
 from materials.property import Property
 from materials.source import Source
 from thermal.circuit.supply import DirectDrive
+from thermal.constants import ZERO_CELSIUS
 from thermal.control import FixedDrive
+from thermal.crosscheck.problem import PrescribedSource, Problem, convection, heating, plain_material, radiation
 from thermal.eddy.radial import RadialSolver
 from thermal.geometry.mesh import Mesh
 from thermal.geometry.shapes import cylinder
@@ -29,7 +30,7 @@ from thermal.schedule import Stop
 from thermal.setup import Setup
 
 RADIUS, LENGTH = 0.03, 0.1
-T_START = ZERO + 20.0
+T_START = ZERO_CELSIUS + 20.0
 LOSSES: dict[str, tuple[BoundaryLoss, ...]] = {"outer": (radiation(0.8, T_START), convection(10.0, T_START))}
 
 _STANDARD = Source("en-1993-1-2", "3.4.1.2 and 3.4.1.3", "recommended")
@@ -38,7 +39,7 @@ STEEL = plain_material(
     Property("specific heat", np.empty(0), np.empty(0), "EN 1993-1-2 3.4.1.2", "hold", 0.0, "J/(kg K)", _STANDARD),
     Property(
         "conductivity",
-        ZERO + np.array([20.0, 800.0, 1200.0]),
+        ZERO_CELSIUS + np.array([20.0, 800.0, 1200.0]),
         np.array([54.0 - 0.0333 * 20.0, 27.3, 27.3]),
         "linear",
         "hold",
@@ -69,7 +70,7 @@ def p1s(tolerance: float) -> Setup:
     heat = shape * (300e3 * mesh.faces["outer"].area[0] / (shape @ mesh.volume))
     return Problem(
         mesh,
-        (heating(None, Stop({"surface": ZERO + 1200.0})),),
+        (heating(None, Stop({"surface": ZERO_CELSIUS + 1200.0})),),
         T_initial=T_START,
         losses=LOSSES,
         source=PrescribedSource(mesh, lambda T, excitation: heat),
@@ -86,7 +87,8 @@ class FieldOfTemperature:
     solver: RadialSolver
 
     def at(self, T: Array) -> FieldOf:
-        t = T - ZERO
+        """Field as a function of the surface field [A/m], rms, at T (n,) [K]."""
+        t = T - ZERO_CELSIUS
         resistivity = np.interp(t, [20.0, 900.0], [0.2e-6, 1.15e-6])
         x = np.clip((t - 745.0) / 30.0, 0.0, 1.0)
         mu_r = 40.0 - 39.0 * x * x * (3.0 - 2.0 * x)

@@ -1,0 +1,1 @@
+"""The solver held against closed solutions, a second engine and other integrators."""
