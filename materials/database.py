@@ -1,26 +1,54 @@
 """Finding materials, gases and linings by name, and reading a user's own file."""
 
 import difflib
-import tomllib
 from collections.abc import Iterable, Mapping
 from functools import cache
 from pathlib import Path
 from types import MappingProxyType
 
-from materials.errors import MaterialError
+from materials import toml_text
+from materials.errors import MaterialError, UnknownName
 from materials.gas import Gas
 from materials.material import Lining, Material
 from materials.parsing import gas_from, lining_from, material_from, reference_from
 from materials.reader import Section
 from materials.source import Reference
 
+NOT_ALLOYS = ("gas", "lining")
+"""Folders of a collection that hold no alloys."""
+
 _DATA = Path(__file__).parent / "data"
-_NOT_ALLOYS = ("gas", "lining")
 
 
 def names() -> list[str]:
     """Keys of the shipped materials, sorted."""
     return sorted(_alloys())
+
+
+def gas_names() -> list[str]:
+    """Keys of the shipped gases, sorted."""
+    return sorted(_files("gas"))
+
+
+def lining_names() -> list[str]:
+    """Keys of the shipped linings, sorted."""
+    return sorted(_files("lining"))
+
+
+def taken() -> Mapping[str, str]:
+    """Every shipped name in lower case, keys and aliases -> the file it stands for."""
+    files = {**_alloys(), **_files("gas"), **_files("lining")}
+    return {name: files[key].name for name, key in [*zip(files, files, strict=True), *aliases().items()]}
+
+
+@cache
+def aliases() -> Mapping[str, str]:
+    """Alias in lower case -> key of the shipped materials, read without building them."""
+    found = {}
+    for key, path in _alloys().items():
+        for alias in _read(path, path.name).texts("aliases"):
+            found[alias.lower()] = key
+    return found
 
 
 def get(key: str) -> Material:
@@ -39,9 +67,9 @@ def get(key: str) -> Material:
     files = _alloys()
     wanted = key.strip().lower()
     if wanted not in files:
-        wanted = _aliases().get(wanted, wanted)
+        wanted = aliases().get(wanted, wanted)
     if wanted not in files:
-        raise _unknown("material", key, files, _aliases())
+        raise unknown("material", key, files, aliases())
     return _shipped_material(files[wanted])
 
 
@@ -61,6 +89,30 @@ def load_file(path: str | Path) -> Material:
     return material_from(_read(Path(path), str(path)), sources())
 
 
+def load_gas(path: str | Path) -> Gas:
+    """Gas of a user's own TOML file; errors as `load_file`."""
+    return gas_from(_read(Path(path), str(path)), sources())
+
+
+def load_lining(path: str | Path) -> Lining:
+    """Lining of a user's own TOML file; errors as `load_file`."""
+    return lining_from(_read(Path(path), str(path)), sources())
+
+
+def load_any(path: str | Path) -> Material | Lining | Gas:
+    """What a user's own TOML file holds: a gas has a viscosity, a lining has no group and no resistivity."""
+    root = _read(Path(path), str(path))
+    if root.has("viscosity"):
+        return load_gas(path)
+    return load_file(path) if root.has("group") or root.has("resistivity") else load_lining(path)
+
+
+def head(path: str | Path) -> tuple[str, tuple[str, ...]]:
+    """Key and aliases of a user's own TOML file, read without building what it holds; errors as `load_file`."""
+    root = _read(Path(path), str(path))
+    return root.text("key"), root.texts("aliases")
+
+
 @cache
 def gas(key: str) -> Gas:
     """Shipped gas, such as "air".
@@ -77,7 +129,7 @@ def gas(key: str) -> Gas:
     """
     files = _files("gas")
     if key not in files:
-        raise _unknown("gas", key, files, ())
+        raise unknown("gas", key, files, ())
     return gas_from(_read(files[key], files[key].name), sources())
 
 
@@ -97,7 +149,7 @@ def lining(key: str) -> Lining:
     """
     files = _files("lining")
     if key not in files:
-        raise _unknown("lining", key, files, ())
+        raise unknown("lining", key, files, ())
     return lining_from(_read(files[key], files[key].name), sources())
 
 
@@ -120,31 +172,22 @@ def _files(group: str) -> dict[str, Path]:
 
 @cache
 def _alloys() -> dict[str, Path]:
-    groups = sorted(path.name for path in _DATA.iterdir() if path.is_dir() and path.name not in _NOT_ALLOYS)
+    groups = sorted(path.name for path in _DATA.iterdir() if path.is_dir() and path.name not in NOT_ALLOYS)
     return {key: path for group in groups for key, path in _files(group).items()}
-
-
-@cache
-def _aliases() -> dict[str, str]:
-    """Alias -> key, read without building the materials."""
-    found = {}
-    for key, path in _alloys().items():
-        for alias in _read(path, path.name).texts("aliases"):
-            found[alias.lower()] = key
-    return found
 
 
 def _read(path: Path, shown: str) -> Section:
     try:
-        with path.open("rb") as file:
-            return Section(shown, "", tomllib.load(file))
+        return Section(shown, "", toml_text.parsed(toml_text.read(path)))
     except OSError as error:
         raise MaterialError(f"{shown}: cannot be read ({error.strerror})") from None
-    except (tomllib.TOMLDecodeError, UnicodeDecodeError) as error:
-        raise MaterialError(f"{shown}: not valid TOML: {error}") from None
+    except toml_text.TextError as error:
+        line = "" if error.line is None else f"line {error.line}: "
+        raise MaterialError(f"{shown}: {line}{error}") from None
 
 
-def _unknown(what: str, key: str, known: Iterable[str], aliases: Iterable[str]) -> MaterialError:
-    near = difflib.get_close_matches(key.lower(), [*known, *aliases], n=1)
+def unknown(what: str, key: str, known: Iterable[str], also: Iterable[str]) -> UnknownName:
+    """The refusal of a name nobody has: lists the known keys, and the nearest of these and of the names in `also`."""
+    near = difflib.get_close_matches(key.lower(), [*known, *also], n=1)
     hint = f", did you mean '{near[0]}'?" if near else ""
-    return MaterialError(f"unknown {what} '{key}'{hint} (known: {', '.join(sorted(known))})")
+    return UnknownName(f"unknown {what} '{key}'{hint} (known: {', '.join(sorted(known))})")

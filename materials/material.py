@@ -36,13 +36,29 @@ class Surface:
     grows: bool
 
 
+@dataclass(frozen=True, slots=True)
+class Exemption:
+    """A departure from a rule of the audit that is physics and no mistake, as the data file names it.
+
+    check : of the audit ; start, end : where it holds [K] ; reason : a sentence without a full stop.
+    """
+
+    name: str
+    check: str
+    start: float
+    end: float
+    reason: str
+    source: Source
+
+
 @dataclass(frozen=True, eq=False)
 class Material:
     """One alloy.
 
     density : [kg/m3] at 20 °C ; conductivity [W/(m K)], resistivity [ohm m], specific_heat [J/(kg K)] without
     transformation heats ; caloric : enthalpy with them ; curie_temperature, solidus, liquidus : [K] or None ;
-    latent_heat : [J/kg] or None ; data : every number of the file ; references : what their sources cite.
+    latent_heat : [J/kg] or None ; data : every number of the file ; references : what their sources cite ;
+    molar_mass : mean over the atoms [kg/mol] or None ; exemptions : from rules of the audit.
     """
 
     key: str
@@ -61,6 +77,8 @@ class Material:
     latent_heat: float | None
     data: tuple[Datum, ...]
     references: Mapping[str, Reference]
+    molar_mass: float | None = None
+    exemptions: tuple[Exemption, ...] = ()
 
     @property
     def curie_temperature(self) -> float | None:

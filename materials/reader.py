@@ -1,6 +1,7 @@
 """Checked access to a data file: every refusal names the file and the key."""
 
 import difflib
+import math
 from collections.abc import Iterable
 from typing import NoReturn
 
@@ -80,6 +81,8 @@ class Section:
             or any(isinstance(item, bool) or not isinstance(item, (int, float)) for item in value)
         ):
             self.refuse(key, "must be a list of numbers, at least one")
+        if not all(map(math.isfinite, value)):
+            self.refuse(key, "every entry must be a finite number")
         unit = self.unit(unit_key, dimension)
         try:
             return np.array([quantity(f"{number!r} {unit}", dimension) for number in value])

@@ -122,6 +122,7 @@ _DIMENSIONS: dict[str, _Dimension] = {
         "J, kJ, MJ, kWh",
         {"J": 1, "kJ": 1e3, "MJ": 1e6, "Wh": 3600, "kWh": 3.6e6, "Btu": _BTU},
     ),
+    "molar_mass": _of("a molar mass", "g/mol", "kg/mol, g/mol", {"kg/mol": 1, "g/mol": 1e-3}),
     "viscosity": _of("a viscosity", "Pa s", "Pa s, mPa s", {"Pas": 1, "mPas": 1e-3, "uPas": 1e-6}),
     "ratio": _of("a ratio", "%", "1, %", {"1": 1, "": 1, "%": 1e-2}),
 }

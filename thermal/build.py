@@ -8,33 +8,29 @@ import numpy as np
 
 from materials.material import Material
 from materials.property import Property
-from thermal.boundary.convection import constant_convection, cylinder_convection, plate_convection
-from thermal.boundary.emissivity import Emissivity, emissivity_of
-from thermal.boundary.lining import flat_lining, round_lining
-from thermal.boundary.radiation import Radiation, bare_coil_radiation, bore_radiation
 from thermal.case import Case
-from thermal.case.against_materials import lining_material, surroundings_gas, workpiece_material
+from thermal.case.against_materials import workpiece_material
 from thermal.case.schema import Heat, Hold, Plate, Tube
 from thermal.case.schema import Stage as StageWords
 from thermal.circuit.supply import CoilSupply, DirectDrive
 from thermal.circuit.winding import Winding, copper_depth, copper_resistivity, usual_wall, wall_factor
 from thermal.conduction.assemble import EnthalpyTable, Section
+from thermal.constants import ZERO_CELSIUS
 from thermal.control import Control, FixedDrive, HoldTemperature
 from thermal.eddy.cell_mean import NARROWEST
 from thermal.eddy.exact import skin_depth
 from thermal.eddy.finite_coil import FluxPath, SectionSource
 from thermal.eddy.radial import RadialSolver
+from thermal.errors import OutOfRange
 from thermal.geometry.coil import Coil
 from thermal.geometry.grading import graded_edges
 from thermal.geometry.mesh import Mesh
 from thermal.geometry.sampling import Sampler
 from thermal.geometry.shapes import cut, cylinder, plate
-from thermal.interfaces import Array, BoundaryLoss, Demand, PropertyOf, Supply
+from thermal.interfaces import Array, Demand, PropertyOf, Supply
+from thermal.losses import losses_of
 from thermal.schedule import Stage, Stop
-from thermal.setup import Losses, Setup
-
-COPPER_EMISSIVITY = 0.6
-"""Emissivity of the bore of a bare copper coil, tarnished: 0.5-0.7 (common practice)."""
+from thermal.setup import Setup
 
 FIELD_PARTS = 3
 """Field cells in each cell of a magnetic workpiece."""
@@ -97,7 +93,7 @@ def build(case: Case) -> Setup:
         supply=supply,
         has_coil=coil is not None,
         share=covered / coil.length if coil is not None and row else 1.0,
-        losses=_losses(case, material, coil, assumptions),
+        losses=losses_of(case, material, coil, _covered(case, coil), assumptions),
         stages=tuple(
             replace(_stage(words, material, mass, case.workpiece.section), supply=_direct(case, index))
             for index, words in enumerate(case.schedule)
@@ -105,6 +101,7 @@ def build(case: Case) -> Setup:
         depths={reading.name: min(reading.depth, case.workpiece.section) for reading in case.readings},
         T_initial=case.workpiece.initial,
         T_end=T_end,
+        gas=case.surroundings.gas,
         mass=mass,
         frequency=frequency,
         tolerance=case.numerics.tolerance,
@@ -134,13 +131,16 @@ def coil_of(case: Case, frequency: float) -> Coil | None:
 
 
 def interpolated(curve: Property) -> PropertyOf:
-    """A property as one table look-up, held at both ends; curves that are not straight are sampled finely."""
+    """A property as one table look-up, held or refused (OutOfRange) beyond its data; a curve is sampled finely."""
     T, value = curve.T, curve.value
     if curve.rule != "linear" and T.size > 1:
         T = np.unique(np.concatenate([T, np.arange(T[0], T[-1], 0.5)]))
         value = curve(T)
 
     def look_up(at: Array) -> Array:
+        if curve.beyond == "refuse" and (at.min() < T[0] or at.max() > T[-1]):
+            low, high, *asked = (f"{each - ZERO_CELSIUS:.0f}" for each in (T[0], T[-1], at.min(), at.max()))
+            raise OutOfRange(f"{curve.name} is known from {low} to {high} °C, asked from {' to '.join(asked)} °C")
         return np.interp(at, T, value)
 
     return look_up
@@ -163,6 +163,11 @@ def _model_choices(case: Case, material: Material, coil: Coil | None) -> list[st
         choices.append("narrow edges of the plate: lose heat as in the open, the lining left out there (assumption)")
     if piece.axis == "vertical" and case.surroundings.h is None:
         choices.append("end faces: convection of an upright plate, though one looks up and one down (estimate)")
+    if isinstance(piece, Tube):
+        choices.append(
+            "bore: loses by radiation through its two ends only; the gas that moves through it is left out, once or "
+            "twice as much again at 300 °C, a third at 900 °C (estimate; more with the axis vertical)"
+        )
     for index, stage in enumerate(case.schedule):
         if isinstance(stage, Hold) and _direct(case, index) is not None:
             choices.append(f"schedule.{index} (hold): at most what the heating before it used (assumption)")
@@ -309,81 +314,3 @@ def _stage(words: StageWords, material: Material, mass: float, section: float) -
 def _stop(targets: dict[str, float], falling: bool) -> Stop:
     temperatures = {name: T for name, T in targets.items() if name != "spread"}
     return Stop(temperatures, targets.get("spread"), falling)
-
-
-def _losses(case: Case, material: Material, coil: Coil | None, assumptions: list[str]) -> Losses:
-    piece, around = case.workpiece, case.surroundings
-    if piece.emissivity is not None:
-        skin = emissivity_of(piece.emissivity, False, piece.initial)
-    else:
-        assert piece.surface is not None
-        surface = material.surfaces[piece.surface]
-        skin = emissivity_of(surface.emissivity, surface.grows, piece.initial)
-    T_out = around.temperature
-    open_air: tuple[BoundaryLoss, ...] = (Radiation("radiation", skin, T_out), _side_convection(case))
-    ends: tuple[BoundaryLoss, ...] = (Radiation("radiation", skin, T_out), _end_convection(case))
-    alone: dict[str, tuple[BoundaryLoss, ...]] = {"outer": open_air, "ends": ends}
-    if isinstance(piece, Plate):
-        alone["edges"] = ends
-    # Of a piece longer than the coil only the part inside is computed: it has no ends of its own.
-    beyond = coil is not None and piece.length > coil.length
-    if beyond:
-        alone["ends"] = ()
-    in_coil = dict(alone)
-    if case.coil is not None:
-        in_coil["outer"] = _facing_coil(case, skin, assumptions)
-    if piece.neighbours == "touching":
-        in_coil["ends"] = ()
-    if isinstance(piece, Tube):
-        bore = piece.outer_diameter / 2.0 - piece.wall
-        out_of_bore = (bore_radiation("radiation", bore, piece.length, T_out),)
-        alone["bore"] = out_of_bore
-        in_coil["bore"] = () if piece.neighbours == "touching" else out_of_bore
-    return {"coil": in_coil, "open": alone}
-
-
-def _facing_coil(case: Case, skin: Emissivity, assumptions: list[str]) -> tuple[BoundaryLoss, ...]:
-    piece, words = case.workpiece, case.coil
-    assert words is not None
-    width, height = words.bore
-    flat = isinstance(piece, Plate)
-    room = (height - piece.outline[1]) / 2.0
-    if case.lining is None:
-        ratio = 1.0 if flat else piece.outline[0] / width
-        assumptions.append(
-            f"coil bore emissivity = {COPPER_EMISSIVITY:g} (tarnished copper, common practice); the bare coil is taken "
-            "as a closed wall for radiation, with the gas of the room around the workpiece"
-        )
-        seen = bare_coil_radiation("radiation", skin, words.temperature, ratio, COPPER_EMISSIVITY)
-        return (seen, _side_convection(case))
-    stuff = lining_material(case)
-    assert stuff is not None
-    emissivity = case.lining.emissivity if case.lining.emissivity is not None else stuff.emissivity
-    still_gas = surroundings_gas(case)
-    thickness = case.lining.thickness
-    if flat:
-        gap = room - thickness
-        return (
-            flat_lining("lining", skin, still_gas, stuff.conductivity, emissivity, gap, thickness, words.temperature),
-        )
-    radii = (piece.outline[0] / 2.0, width / 2.0 - thickness, width / 2.0)
-    return (round_lining("lining", skin, still_gas, stuff.conductivity, emissivity, radii, words.temperature),)
-
-
-def _side_convection(case: Case) -> BoundaryLoss:
-    piece, around = case.workpiece, case.surroundings
-    if around.h is not None:
-        return constant_convection("convection", around.h, around.temperature)
-    gas, speed = surroundings_gas(case), around.speed or 0.0
-    if isinstance(piece, Plate):
-        height = piece.width if piece.axis == "horizontal" else piece.length
-        return plate_convection("convection", gas, around.temperature, height, speed)
-    return cylinder_convection("convection", gas, around.temperature, piece.outline[0], piece.length, piece.axis, speed)
-
-
-def _end_convection(case: Case) -> BoundaryLoss:
-    piece, around = case.workpiece, case.surroundings
-    if around.h is not None:
-        return constant_convection("convection", around.h, around.temperature)
-    gas, speed = surroundings_gas(case), around.speed or 0.0
-    return plate_convection("convection", gas, around.temperature, piece.outline[1], speed)

@@ -1,5 +1,7 @@
 """What can go wrong, as exceptions that say where, what and what to do."""
 
+from materials.errors import one_line
+
 
 class ThermalError(Exception):
     """Base of all errors this package raises on purpose; the text is one sentence for the user."""
@@ -14,8 +16,8 @@ class CaseError(ThermalError):
     """
 
     def __init__(self, *problems: str) -> None:
-        self.problems = problems
-        super().__init__("\n".join(problems))
+        self.problems = tuple(map(one_line, problems))
+        super().__init__("\n".join(self.problems))
 
 
 class OutOfRange(ThermalError):

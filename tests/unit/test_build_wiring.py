@@ -230,13 +230,19 @@ def test_faces_of_a_touching_plate() -> None:
     assert names(row["open"]["ends"]) == ["radiation", "convection"]
 
 
-def free_convection(T: float, size: float, constants: tuple[float, float]) -> float:
-    """[W/m2]; Churchill & Chu 1975, (0.825, 0.492) along a vertical plate, (0.60, 0.559) round a cylinder."""
+def free_convection(T: float, size: float, constants: tuple[float, float], slenderness: float = 0.0) -> float:
+    """[W/m2]; Churchill & Chu 1975, (0.825, 0.492) along a vertical plate, (0.60, 0.559) round a cylinder.
+
+    slenderness : height over diameter of a vertical cylinder; Popiel, Wojtkowiak & Bober 2007.
+    """
     air, film = database.gas("air"), np.array([(T + T_ROOM) / 2.0])
     nu, Pr, k = (float(law(film)[0]) for law in (air.kinematic_viscosity, air.prandtl, air.conductivity))
     Ra = 9.80665 / film[0] * (T - T_ROOM) * size**3 / nu**2 * Pr
     still, prandtl = constants
     Nu = (still + 0.387 * Ra ** (1 / 6) / (1.0 + (prandtl / Pr) ** (9 / 16)) ** (8 / 27)) ** 2
+    curved = np.sqrt(32.0) * (Ra / Pr) ** -0.25 * slenderness
+    C = 0.9165 - 0.0043 * np.sqrt(Pr) + 0.01333 * np.log(Pr) + 0.0004809 / Pr
+    Nu *= 1.0 + (0.0571322 + 0.20305 * Pr**-0.43) * curved**C
     return float(Nu * k / size * (T - T_ROOM))
 
 
@@ -258,7 +264,8 @@ def test_height_of_free_convection(shape: str, axis: str, size: float, law: tupl
     text = drive_case(shape, 'absorbed_power = "5 kW"', "3 kHz", SECOND)
     faces = built(text, {"workpiece.axis": axis}).losses["open"]
     T = 700.0
-    assert flux(faces["outer"][1], T) == pytest.approx(free_convection(T, size, law), rel=1e-5)
+    slenderness = 2.5 if axis == "vertical" and shape != "plate" else 0.0
+    assert flux(faces["outer"][1], T) == pytest.approx(free_convection(T, size, law, slenderness), rel=1e-5)
     # Ends of a round piece are as high as its diameter, ends and edges of a plate as its thickness.
     end = 0.02 if shape == "plate" else 0.04
     for face in ("ends", "edges") if shape == "plate" else ("ends",):

@@ -7,6 +7,7 @@ numbers of one length).
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from functools import partial
 from typing import Literal
 
 import numpy as np
@@ -18,6 +19,7 @@ from thermal.boundary.correlations import (
     cylinder_in_cross_flow,
     horizontal_cylinder,
     plate_in_parallel_flow,
+    vertical_cylinder,
     vertical_plate,
 )
 from thermal.boundary.table import Law, by_face, constant_law
@@ -76,13 +78,14 @@ def cylinder_convection(
     """Convection from the side of a cylinder.
 
     T_surroundings : [K]. diameter, length : [m]. speed : [m/s] of a flow across the axis, 0 for none.
-    With the axis vertical the side is a vertical plate as high as the cylinder is long.
+    With the axis vertical the side is a vertical plate as high as the cylinder is long, corrected for its curvature.
     Errors: OutOfRange where the gas table or a correlation does not reach the surroundings.
     """
     if axis == "horizontal":
         free = free_coefficient(gas, T_surroundings, diameter, horizontal_cylinder, CYLINDER_RAYLEIGH)
     else:
-        free = free_coefficient(gas, T_surroundings, length, vertical_plate, PLATE_RAYLEIGH)
+        side = partial(vertical_cylinder, slenderness=length / diameter)
+        free = free_coefficient(gas, T_surroundings, length, side, PLATE_RAYLEIGH)
     forced = forced_coefficient(gas, T_surroundings, diameter, speed, cylinder_in_cross_flow)
     return _tabulated(name, gas, T_surroundings, free, forced, speed)
 

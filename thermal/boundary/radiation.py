@@ -74,8 +74,8 @@ def bore_radiation(name: str, radius: float, length: float, T_surroundings: floa
     openings: 2 pi r^2 (1 - F) sigma (T^4 - Ta^4) leaves in all, F being the view factor from one opening to
     the other, which matters in rings (F = 0.01 at length = 10 radii, 0.38 at 1). Upper bound for a bright
     bore in a short ring. Convection in the bore is left out.
-    Source: Bergman et al., 7th ed., Table 13.2, coaxial parallel disks (F).
+    Source: Bergman et al., 7th ed., Table 13.2, coaxial parallel disks (F); of all proportions, since
+    (r / length) (1 - F) = 2 / (y + sqrt(y^2 + 4)) with y = length / r loses no digits.
     """
-    X = 2 + (length / radius) ** 2
-    through = (X - sqrt(X * X - 4)) / 2
-    return Radiation(name, Emissivity(constant_law(radius / length * (1 - through)), False), T_surroundings)
+    y = length / radius
+    return Radiation(name, Emissivity(constant_law(2 / (y + sqrt(y * y + 4))), False), T_surroundings)

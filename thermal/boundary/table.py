@@ -63,7 +63,9 @@ class Law:
         if isinstance(T, float):
             if not self._low <= T <= self._high:
                 self._refuse(T, T)
-        elif (self.below or self.above) and T.size:
+            origin, value, slope, _ = self._rows[bisect_right(self._edges, T)]
+            return value + slope * (T - origin), slope
+        if (self.below or self.above) and T.size:
             self._refuse(T.min(), T.max())
         return self.held(T)
 
@@ -135,7 +137,7 @@ class Formula(Protocol):
 
 def by_face(formula: Formula, T_surface: Real, T_peak: Real) -> tuple[Real, Real]:
     """Flux and slope of a formula at (s,) faces or at one face given as numbers, the quicker way for one."""
-    if not isinstance(T_surface, float) and T_surface.shape == np.shape(T_peak) == (1,):
-        q, slope = formula(T_surface.item(), T_peak.item())
-        return np.array([q]), np.array([slope])
-    return formula(T_surface, T_peak)
+    if isinstance(T_surface, float) or not T_surface.shape == np.shape(T_peak) == (1,):
+        return formula(T_surface, T_peak)
+    q, slope = formula(T_surface.item(), T_peak.item())
+    return np.array([q]), np.array([slope])

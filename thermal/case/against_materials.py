@@ -6,11 +6,12 @@ from collections.abc import Iterator
 from materials import database
 from materials.errors import MaterialError
 from materials.gas import Gas
+from materials.library import Library
 from materials.material import Lining, Material
 from thermal.case.case import Case
 from thermal.case.problems import Problem
 from thermal.case.quantity import shown
-from thermal.case.schema import Heat, Hold
+from thermal.case.schema import CaseFile, Heat, Hold
 
 
 def workpiece_material(case: Case) -> Material:
@@ -22,29 +23,33 @@ def workpiece_material(case: Case) -> Material:
         Unknown name (with the nearest one), or a file that is missing or wrong.
     """
     name = case.workpiece.material
-    return database.load_file(case.folder / name) if name.endswith(".toml") else database.get(name)
+    return database.load_file(case.folder / name) if _is_file(name) else Library.of(case.materials).material(name)
 
 
 def lining_material(case: Case) -> Lining | None:
-    """Lining of the coil; None without a lining.
+    """Lining of the coil, from the library or from a file beside the case; None without a lining.
 
     Raises
     ------
     MaterialError
-        Unknown name (with the nearest one).
+        As for workpiece_material.
     """
-    return None if case.lining is None else database.lining(case.lining.material)
+    if case.lining is None:
+        return None
+    name = case.lining.material
+    return database.load_lining(case.folder / name) if _is_file(name) else Library.of(case.materials).lining(name)
 
 
 def surroundings_gas(case: Case) -> Gas:
-    """Gas around the workpiece.
+    """Gas around the workpiece, from the library or from a file beside the case.
 
     Raises
     ------
     MaterialError
-        Unknown name (with the nearest one).
+        As for workpiece_material.
     """
-    return database.gas(case.surroundings.gas)
+    name = case.surroundings.gas
+    return database.load_gas(case.folder / name) if _is_file(name) else Library.of(case.materials).gas(name)
 
 
 def check_against_materials(case: Case) -> list[Problem]:
@@ -63,6 +68,21 @@ def check_against_materials(case: Case) -> list[Problem]:
     except MaterialError as error:
         problems.append((("surroundings", "gas"), str(error)))
     return problems
+
+
+def own_files(sections: CaseFile, library: Library) -> dict[str, str]:
+    """Dotted path -> absolute path of the file, for everything a case names that stands in the user's own folder."""
+    found = {
+        "workpiece.material": library.file("material", sections.workpiece.material),
+        "surroundings.gas": library.file("gas", sections.surroundings.gas),
+    }
+    if sections.lining is not None:
+        found["lining.material"] = library.file("lining", sections.lining.material)
+    return {dotted: str(path.resolve()) for dotted, path in found.items() if path is not None}
+
+
+def _is_file(name: str) -> bool:
+    return name.endswith(".toml")
 
 
 def _workpiece(case: Case, material: Material) -> Iterator[Problem]:

@@ -28,6 +28,7 @@ class Case:
     text : the file as it was read.
     overrides : dotted path and value of everything set from outside the file, in the order of setting.
     defaults_used : one line for every default that was taken.
+    materials : folder of the user's own materials, None where there is none.
     """
 
     name: str
@@ -35,6 +36,7 @@ class Case:
     text: str
     overrides: tuple[tuple[str, object], ...]
     defaults_used: tuple[str, ...]
+    materials: Path | None
     format: int
     title: str
     workpiece: Workpiece

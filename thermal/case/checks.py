@@ -18,9 +18,22 @@ from thermal.case.schema import (
     Tube,
     Until,
 )
+from thermal.constants import COPPER_TEMPERATURES
 
 RESERVED = (*TEMPERATURES, "spread", "time", "stage")
 """Names a reading of the user must not take: columns and targets that exist already."""
+
+MOST = {"schedule": 1000, "reading": 100}
+"""Tables of a kind a run is made for."""
+
+LONGEST_NAME = 40
+"""Characters of the name of a reading."""
+
+MOST_ROWS = 100_000
+"""Rows of the curves, a hundred times what a plot can show."""
+
+MOST_RESPONSES = 100_000
+"""Response times in a hold; a step ends at twenty of them."""
 
 _NEEDS_COIL_AND_SUPPLY = ("supply_power", "coil_current", "coil_voltage")
 _SLACK = 1e-9
@@ -29,7 +42,33 @@ _SLACK = 1e-9
 
 def check_sections(case: CaseFile) -> list[Problem]:
     """Path and sentence of everything that does not fit."""
-    return [*_shape(case), *_coil(case), *_lining(case), *_readings(case), *_schedule(case)]
+    sizes = list(_sizes(case))
+    return sizes or [
+        *_shape(case), *_coil(case), *_lining(case), *_readings(case), *_schedule(case), *_output(case),
+    ]  # fmt: skip
+
+
+def _sizes(case: CaseFile) -> Iterator[Problem]:
+    for name, entries in (("schedule", case.schedule), ("reading", case.reading)):
+        if len(entries) > MOST[name]:
+            yield (name,), f"there are {len(entries)} of them, a case has at most {MOST[name]}"
+    if len(case.output.profiles_at) > 1000:
+        yield ("output", "profiles_at"), f"there are {len(case.output.profiles_at)} moments, a case has at most 1000"
+
+
+def _output(case: CaseFile) -> Iterator[Problem]:
+    """An interval must leave a number of rows that can be kept."""
+    interval = case.output.interval
+    lengths = [
+        stage.longest or stage.duration if isinstance(stage, Heat) else stage.duration for stage in case.schedule
+    ]
+    known = sum(length for length in lengths if length is not None)
+    if interval is not None and known > MOST_ROWS * interval:
+        yield (
+            ("output", "interval"),
+            f"{shown(interval, 's')} would write {known / interval:.0f} rows over {shown(known, 's')}, "
+            f"at most {MOST_ROWS} are kept ({shown(known / MOST_ROWS, 's')} or more)",
+        )
 
 
 def _shape(case: CaseFile) -> Iterator[Problem]:
@@ -56,6 +95,13 @@ def _coil(case: CaseFile) -> Iterator[Problem]:
                 "a supply feeds a coil, add a [coil] or leave it out and put the frequency in the drive",
             )
         return
+    low, high = COPPER_TEMPERATURES
+    if not low <= coil.temperature <= high:
+        yield (
+            ("coil", "temperature"),
+            f"{shown(coil.temperature, '°C')} is no temperature of a water-cooled coil "
+            f"({shown(low, '°C')} to {shown(high, '°C')})",
+        )
     plate = isinstance(case.workpiece, Plate)
     if coil.opening is not None and not plate:
         yield ("coil", "opening"), f"is for a plate, a {case.workpiece.shape} takes inner_diameter"
@@ -111,6 +157,8 @@ def _readings(case: CaseFile) -> Iterator[Problem]:
                 (*path, "name"),
                 f"'{reading.name}' is not a name, it starts with a letter and has letters, digits, - and _",
             )
+        elif len(reading.name) > LONGEST_NAME:
+            yield (*path, "name"), f"is longer than {LONGEST_NAME} characters"
         elif reading.name in RESERVED:
             yield (
                 (*path, "name"),
@@ -142,6 +190,12 @@ def _schedule(case: CaseFile) -> Iterator[Problem]:
                         yield from _start(case, stage.until, (*path, "until"))
             case Hold():
                 yield from _names(case, stage.at, (*path, "at"))
+                if stage.duration > MOST_RESPONSES * stage.response:
+                    yield (
+                        (*path, "response"),
+                        f"{shown(stage.response, 's')} is too short for a hold of {shown(stage.duration, 's')} "
+                        f"({shown(stage.duration / MOST_RESPONSES, 's')} or more)",
+                    )
                 if not driven:
                     yield (
                         path,

@@ -1,34 +1,36 @@
 """Reading a case file: TOML, overrides, defaults, schema, checks; every mistake with its line."""
 
 import copy
-import re
-import tomllib
 from collections.abc import Mapping
 from pathlib import Path
 from typing import Any
 
 from pydantic import ValidationError
 
-from thermal.case.against_materials import check_against_materials
+from materials import toml_text
+from materials.errors import MaterialError, one_line
+from materials.library import Library
+from thermal.case.against_materials import check_against_materials, own_files
 from thermal.case.case import Case
 from thermal.case.checks import check_sections
 from thermal.case.defaults import filled
 from thermal.case.locate import Path as Where
 from thermal.case.locate import lines_of
 from thermal.case.naming import stages_in_words
-from thermal.case.problems import Places, brackets, problems_of
+from thermal.case.problems import Places, Problem, problems_of
 from thermal.case.schema import CaseFile
 from thermal.case.write import to_toml
 from thermal.errors import CaseError
 
 LISTS = ("schedule", "reading")
 """Tables there may be several of."""
-QUOTES = "\"'"
 
 _NOTHING: Mapping[str, object] = {}
 
 
-def load_case(path: str | Path, overrides: Mapping[str, object] = _NOTHING) -> Case:
+def load_case(
+    path: str | Path, overrides: Mapping[str, object] = _NOTHING, *, materials: str | Path | None = None
+) -> Case:
     """The case in a TOML file.
 
     Parameters
@@ -38,28 +40,34 @@ def load_case(path: str | Path, overrides: Mapping[str, object] = _NOTHING) -> C
     overrides : mapping
         Dotted path -> value, set before anything is checked: {"supply.power": "80 kW",
         "schedule.0.longest": "60 s"}. Texts that are a TOML number, list or table are taken as such.
+    materials : path or None
+        Folder of your own materials, linings and gases, beside the shipped ones; see materials/data/README.md.
 
     Raises
     ------
     CaseError
-        The file cannot be read, or there are mistakes in it; all of them at once.
+        The folder cannot be used, the file cannot be read, or there are mistakes in it; all of them at once.
     """
     path = Path(path)
     try:
-        raw = path.read_bytes()
+        text = toml_text.read(path)
     except FileNotFoundError:
         raise CaseError(f"{path}: there is no such case file") from None
     except OSError as error:
         raise CaseError(f"{path}: cannot be read ({error.strerror})") from None
-    try:
-        text = raw.decode("utf-8-sig")
-    except UnicodeDecodeError as error:
-        line = raw.count(b"\n", 0, error.start) + 1
-        raise CaseError(f"{f'line {line}':<9}{path}: is not UTF-8 text, save it as UTF-8") from None
-    return from_text(text, path.parent, overrides, name=path.stem)
+    except toml_text.TextError as error:
+        raise CaseError(_at_line(error.line, f"{path}: {error}")) from None
+    return from_text(text, path.parent, overrides, name=one_line(path.stem), materials=materials)
 
 
-def from_text(text: str, folder: str | Path, overrides: Mapping[str, object] = _NOTHING, *, name: str = "case") -> Case:
+def from_text(
+    text: str,
+    folder: str | Path,
+    overrides: Mapping[str, object] = _NOTHING,
+    *,
+    name: str = "case",
+    materials: str | Path | None = None,
+) -> Case:
     """The case in a TOML text.
 
     Parameters
@@ -72,25 +80,41 @@ def from_text(text: str, folder: str | Path, overrides: Mapping[str, object] = _
         As for load_case.
     name : str
         What the results are named after.
+    materials : path or None
+        As for load_case.
 
     Raises
     ------
     CaseError
-        There are mistakes in it; all of them at once.
+        The folder of materials cannot be used, or there are mistakes in it; all of them at once.
     """
+    try:
+        library = Library.of(materials)
+    except MaterialError as error:
+        raise CaseError(str(error)) from None
     document, paths = _with_overrides(_parsed(text), overrides)
     full, taken = filled(document)
-    places = Places(lines_of(text), paths, stages_in_words(full))
+
+    def refusal(problems: list[Problem]) -> CaseError:
+        places = Places(lines_of(text), paths, stages_in_words(full))
+        return CaseError(*places.finished(problems, _mistakes_of_file(text, folder, paths, materials)))
+
     try:
         sections = CaseFile.model_validate(full)
     except ValidationError as error:
-        raise CaseError(*places.finished(problems_of(error, full), _mistakes_of_file(text, folder, paths))) from None
+        raise refusal(problems_of(error, full)) from None
+    own = own_files(sections, library)
+    if own:
+        for dotted, file in own.items():
+            _set(full, dotted, file)
+        sections = CaseFile.model_validate(full)
     case = Case(
         name=name,
         folder=Path(folder),
         text=text,
-        overrides=tuple(overrides.items()),
+        overrides=tuple({**overrides, **own}.items()),
         defaults_used=taken,
+        materials=None if materials is None else Path(materials).absolute(),
         format=sections.format,
         title=sections.title,
         workpiece=sections.workpiece,
@@ -105,7 +129,7 @@ def from_text(text: str, folder: str | Path, overrides: Mapping[str, object] = _
     )
     problems = [*check_sections(sections), *check_against_materials(case)]
     if problems:
-        raise CaseError(*places.finished(problems, _mistakes_of_file(text, folder, paths)))
+        raise refusal(problems)
     return case
 
 
@@ -124,7 +148,8 @@ def with_changes(case: Case, changes: Mapping[str, object]) -> Case:
     CaseError
         The changed case has mistakes.
     """
-    return from_text(case.text, case.folder, {**dict(case.overrides), **changes}, name=case.name)
+    kept = {path: value for path, value in case.overrides if path not in changes}
+    return from_text(case.text, case.folder, {**kept, **changes}, name=case.name, materials=case.materials)
 
 
 def as_run(case: Case) -> str:
@@ -135,11 +160,13 @@ def as_run(case: Case) -> str:
     return to_toml(document)
 
 
-def _mistakes_of_file(text: str, folder: str | Path, paths: tuple[Where, ...]) -> tuple[str, ...]:
+def _mistakes_of_file(
+    text: str, folder: str | Path, paths: tuple[Where, ...], materials: str | Path | None
+) -> tuple[str, ...]:
     """Mistakes there are without the overrides; none are looked for where nothing was overridden."""
     if paths:
         try:
-            from_text(text, folder)
+            from_text(text, folder, materials=materials)
         except CaseError as error:
             return error.problems
     return ()
@@ -147,38 +174,13 @@ def _mistakes_of_file(text: str, folder: str | Path, paths: tuple[Where, ...]) -
 
 def _parsed(text: str) -> dict[str, Any]:
     try:
-        return tomllib.loads(text)
-    except tomllib.TOMLDecodeError as error:
-        raise CaseError(_broken(text, str(error))) from None
+        return toml_text.parsed(text, LISTS)
+    except toml_text.TextError as error:
+        raise CaseError(_at_line(error.line, str(error))) from None
 
 
-def _broken(text: str, message: str) -> str:
-    """What is wrong with a text that is no TOML, in the words of someone who edits a case."""
-    found = re.fullmatch(r"(.*) \(at line (\d+), column \d+\)", message)
-    lines = text.split("\n")
-    number = int(found.group(2)) if found else len(lines)
-    reason = found.group(1) if found else message.removesuffix(" (at end of document)")
-    second = re.fullmatch(r"Cannot declare \('(\w+)',\) twice", reason)
-    open_quotes = [n for n, line in enumerate(lines, 1) if _has_open_quote(line)]
-    unquoted = re.match(r"\s*([\w.-]+)\s*=\s*([^\s\"'\[{#][^#]*?)\s*(#.*)?$", lines[number - 1])
-    where = f"{f'line {number}':<9}"
-    if second:
-        name = second.group(1)
-        return where + (brackets(name) if name in LISTS else f"the table [{name}] is given a second time")
-    if reason == "Cannot overwrite a value" and lines[number - 1].lstrip().startswith("[["):
-        return f"{where}write every one of them with two brackets: {lines[number - 1].strip()}"
-    if unquoted and reason != "Cannot overwrite a value":
-        return f'{where}{unquoted.group(1)}: put the value in quotes: "{unquoted.group(2).rstrip(QUOTES)}"'
-    if number in open_quotes or (open_quotes and "at end of document" in message):
-        number = number if number in open_quotes else open_quotes[0]
-        return f"{f'line {number}':<9}a closing quote is missing: {lines[number - 1].strip()}"
-    if reason == "Cannot overwrite a value":
-        return f"{where}this key is given a second time: {lines[number - 1].strip()}"
-    return f"{where}this is not TOML: {reason[:1].lower()}{reason[1:]}"
-
-
-def _has_open_quote(line: str) -> bool:
-    return line.count('"') % 2 == 1 or ('"' not in line and line.count("'") % 2 == 1)
+def _at_line(line: int | None, sentence: str) -> str:
+    return sentence if line is None else f"{f'line {line}':<9}{sentence}"
 
 
 def _with_overrides(
@@ -193,6 +195,8 @@ def _with_overrides(
             paths.append(_set(document, dotted, _value(value)))
         except CaseError as error:
             problems.extend(error.problems)
+        except toml_text.TextError as error:
+            problems.append(f"{'--set':<9}{dotted}: {error}")
     if problems:
         raise CaseError(*problems)
     return document, tuple(paths)
@@ -203,13 +207,13 @@ def _set(document: dict[str, Any], dotted: str, value: object) -> Where:
     path: Where = ()
     here: Any = document
     keys = dotted.split(".")
-    if "" in keys:
+    if "" in keys or len(keys) > toml_text.DEEPEST:
         raise CaseError(f"{'--set':<9}'{dotted}' is not the path of a key, write it like supply.power")
     for key in keys:
         last = len(path) == len(keys) - 1
         outer = ".".join(str(part) for part in path)
         if isinstance(here, list):
-            if not key.isdecimal() or int(key) >= len(here):
+            if not (key.isdecimal() and len(key) < 10 and int(key) < len(here)):
                 known = f"write a number from 0 to {len(here) - 1}" if here else "it is empty"
                 raise CaseError(f"{'--set':<9}{dotted}: {outer} is a list without '{key}', {known}")
             index = int(key)
@@ -234,6 +238,7 @@ def _value(value: object) -> object:
     if not isinstance(value, str):
         return value
     try:
-        return tomllib.loads(f"value = {value}")["value"]
-    except (tomllib.TOMLDecodeError, KeyError):
+        document = toml_text.parsed(f"value = {value}")
+    except toml_text.NotToml:
         return value
+    return document["value"] if list(document) == ["value"] else value

@@ -4,14 +4,16 @@ import tomllib
 from collections.abc import Iterator
 from typing import Any
 
+from materials.toml_text import statements
+
 Path = tuple[str | int, ...]
 
 
 def lines_of(text: str) -> dict[Path, int]:
     """Line (from 1) of every table and key: ("schedule", 1, "at", "core") -> 31.
 
-    A statement is found by reading lines until they parse on their own, so that quoted and dotted keys,
-    inline tables and values over several lines need no grammar here. Keys inside a value get its first line.
+    Every statement is parsed on its own, so that quoted and dotted keys, inline tables and values over several
+    lines need no grammar here. Keys inside a value get its first line.
 
     Parameters
     ----------
@@ -21,22 +23,14 @@ def lines_of(text: str) -> dict[Path, int]:
     found: dict[Path, int] = {}
     counts: dict[Path, int] = {}
     table: Path = ()
-    statement, first = "", 0
-    for number, line in enumerate(text.split("\n"), 1):
-        if not statement:
-            first = number
-        statement += line + "\n"
-        try:
-            parsed = tomllib.loads(statement)
-        except tomllib.TOMLDecodeError:
-            continue
-        if line.lstrip().startswith("[") and first == number:
+    for number, statement in statements(text):
+        parsed = tomllib.loads(f"{statement}\n")
+        if statement.lstrip().startswith("["):
             table = _header(parsed, counts)
             found.setdefault(table, number)
         else:
             for path in _paths(parsed):
-                found.setdefault(table + path, first)
-        statement = ""
+                found.setdefault(table + path, number)
     return found
 
 

@@ -7,8 +7,10 @@ from typing import Any
 from pydantic import BaseModel, ValidationError
 from pydantic_core import ErrorDetails
 
+from materials.toml_text import brackets
 from thermal.case import schema
 from thermal.case.locate import Path, line_of
+from thermal.case.quantity import read_value
 
 _STAGES: dict[str, type[BaseModel]] = {
     "heat": schema.Heat,
@@ -54,6 +56,9 @@ _EXAMPLES = {
 Problem = tuple[Path, str]
 """Path of the key and what is wrong with it."""
 
+MOST = 50
+"""Mistakes that are told; a file with more is not what somebody meant to write."""
+
 _LAST = sys.maxsize
 """Stands for the line of what is nowhere in the file."""
 
@@ -74,12 +79,15 @@ class Places:
         self._stages = stages
 
     def finished(self, problems: list[Problem], of_file: tuple[str, ...]) -> list[str]:
-        """Lines like "line 7   workpiece.diameter: ...", overrides first, then in the order of the file.
+        """Lines like "line 7   workpiece.diameter: ...", overrides first, then in the order of the file; 50 at most.
 
         of_file : lines of the mistakes there are without the overrides.
         """
-        found = [self._finished(problem, of_file) for problem in problems]
-        return [line for _, line in sorted(found, key=lambda entry: entry[0])]
+        found = [self._finished(problem, of_file) for problem in problems[:MOST]]
+        told = [line for _, line in sorted(found, key=lambda entry: entry[0])]
+        return (
+            told if len(problems) <= MOST else [*told, "there are more mistakes, they are told once these are mended"]
+        )
 
     def _finished(self, problem: Problem, of_file: tuple[str, ...]) -> tuple[int, str]:
         path, sentence = problem
@@ -115,7 +123,7 @@ def _nearest(word: str, known: list[str]) -> str | None:
 
 
 def problems_of(error: ValidationError, document: dict[str, Any]) -> list[Problem]:
-    """Path and sentence of every mistake the schema found.
+    """Path and sentence of every mistake the schema found, of the first fifty or so if there are many.
 
     Parameters
     ----------
@@ -124,7 +132,7 @@ def problems_of(error: ValidationError, document: dict[str, Any]) -> list[Proble
     document : dict
         What was validated, to name the keys a table of that kind may have.
     """
-    found = error.errors()
+    found = error.errors(include_url=False)[: 2 * MOST]
     misspelt = {
         (*path[:-1], _nearest(str(path[-1]), _allowed(path[:-1], document)))
         for path in (_without_tags(one["loc"]) for one in found if one["type"] == "extra_forbidden")
@@ -154,36 +162,26 @@ def _translated(details: ErrorDetails, document: dict[str, Any]) -> Problem:
             tag = context["discriminator"].strip("'")
             known = list(_SHAPES if tag == "shape" else _STAGES)
             if not isinstance(value, dict):
-                return path, f"{_read(value)} is not a table of keys"
+                return path, f"{read_value(value)} is not a table of keys"
             if tag not in value:
                 return (*path, tag), _missing((*path, tag))
             word = str(value[tag]).casefold()
-            return (*path, tag), f"{_read(value[tag])} is not a {tag}, {near(_OTHER_WORDS.get(word, word), known)}"
+            return (*path, tag), f"{read_value(value[tag])} is not a {tag}, {near(_OTHER_WORDS.get(word, word), known)}"
         case "literal_error":
             accepted = context["expected"].replace("'", "").replace(" or ", ", ")
-            return path, f"{_read(value)} is not accepted (accepted: {accepted})"
+            return path, f"{read_value(value)} is not accepted (accepted: {accepted})"
         case "model_type" | "model_attributes_type" | "dict_type":
-            return path, f"{_read(value)} is not a table of keys"
+            return path, f"{read_value(value)} is not a table of keys"
         case "tuple_type":
             if len(path) == 1 and isinstance(value, dict):
                 return path, brackets(str(path[0]))
-            return path, f"{_read(value)} is not a list" + (f", {brackets(str(path[0]))}" if len(path) == 1 else "")
+            return path, f"{read_value(value)} is not a list" + (
+                f", {brackets(str(path[0]))}" if len(path) == 1 else ""
+            )
         case "string_type":
-            return path, f"{_read(value)} is not a text, put it in quotes"
+            return path, f"{read_value(value)} is not a text, put it in quotes"
         case _:
             return path, details["msg"]
-
-
-def _read(value: object) -> str:
-    """A value of the file in a sentence."""
-    if isinstance(value, dict):
-        return "a table"
-    return "a list" if isinstance(value, list) else f"'{value}'"
-
-
-def brackets(name: str) -> str:
-    """How a list of tables is written."""
-    return f"write [[{name}]] with two brackets"
 
 
 def _without_tags(loc: tuple[int | str, ...]) -> Path:

@@ -22,12 +22,16 @@ from thermal.case.quantity import (
     Opening,
     Power,
     Resistance,
+    ResponseTime,
     Speed,
     Temperature,
     TemperatureDifference,
     Time,
+    Title,
+    Tolerance,
     Turns,
     Voltage,
+    read_value,
 )
 
 DRIVES = ("supply_power", "absorbed_power", "coil_current", "coil_voltage", "surface_field")
@@ -56,12 +60,14 @@ def _targets(record: BaseModel) -> dict[str, float]:
 def _only_one(value: object) -> object:
     if value == 1 and not isinstance(value, bool):
         return value
+    if isinstance(value, str):
+        raise ValueError(f"'{value}' is a text, write the number 1 without quotes")
     raise ValueError(f"{value} is not available in this version (accepted: 1)")
 
 
 def _refinement(value: object) -> object:
     if isinstance(value, bool) or value not in REFINEMENTS:
-        raise ValueError(f"'{value}' is not accepted, write a whole number from 1 to {REFINEMENTS[-1]}")
+        raise ValueError(f"{read_value(value)} is not accepted, write a whole number from 1 to {REFINEMENTS[-1]}")
     return value
 
 
@@ -316,8 +322,8 @@ class Hold(Section):
     stage: Literal["hold"]
     at: At
     duration: Time
-    response: Time
-    reset: Time
+    response: ResponseTime
+    reset: ResponseTime
 
 
 class Transfer(Section):
@@ -342,7 +348,7 @@ class NumericsSection(Section):
     """How the run is computed: tolerance [K] per step, refinement multiplies the planned number of cells."""
 
     dimensions: Annotated[int, BeforeValidator(_only_one)]
-    tolerance: TemperatureDifference
+    tolerance: Tolerance
     refinement: Annotated[int, BeforeValidator(_refinement)]
 
 
@@ -357,7 +363,7 @@ class CaseFile(Section):
     """The whole file."""
 
     format: Annotated[int, BeforeValidator(_only_one)]
-    title: str = ""
+    title: Title = ""
     workpiece: Workpiece
     coil: CoilSection | None = None
     lining: LiningSection | None = None

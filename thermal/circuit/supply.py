@@ -43,9 +43,10 @@ def excitation_for(try_at: Callable[[float, EddyField | None], Trial], start: fl
         if not (math.isfinite(trial.reach) and trial.reach > 0.0):
             break
         off = math.log(trial.reach)
-        if abs(off) < TOLERANCE:
-            return trial
         low, high = (here, high) if off < 0.0 else (low, here)
+        # The field is settled to 1e-5 only: where it jumps past the reach, the excitation is known well enough.
+        if abs(off) < TOLERANCE or high - low < TOLERANCE:
+            return trial
         if before is not None and here != before[0]:
             slope = min(max((off - before[1]) / (here - before[0]), 0.3), STEEPEST)
         slower = before is not None and abs(off) > 0.5 * abs(before[1])

@@ -3,7 +3,8 @@
 import math
 from dataclasses import dataclass
 
-from thermal.constants import MU_0, ZERO_CELSIUS
+from thermal.constants import COPPER_TEMPERATURES, MU_0, ZERO_CELSIUS
+from thermal.errors import OutOfRange
 from thermal.geometry.coil import Coil
 
 COPPER_RESISTIVITY_20C = 1.7241e-8
@@ -14,7 +15,11 @@ COPPER_COEFFICIENT = 3.93e-3
 
 
 def copper_resistivity(temperature: float) -> float:
-    """Resistivity of coil copper [ohm m] at a temperature [K] between 0 and 200 °C."""
+    """Resistivity of coil copper [ohm m] at a temperature [K]. Errors: OutOfRange beyond 0 and 200 °C."""
+    if not COPPER_TEMPERATURES[0] <= temperature <= COPPER_TEMPERATURES[1]:
+        raise OutOfRange(
+            f"the copper of the coil is known from 0 to 200 °C, asked at {temperature - ZERO_CELSIUS:g} °C"
+        )
     return COPPER_RESISTIVITY_20C * (1.0 + COPPER_COEFFICIENT * (temperature - ZERO_CELSIUS - 20.0))
 
 
@@ -46,12 +51,15 @@ def wall_factor(wall: float, depth: float) -> float:
     """Rise of the resistance because the wall is not thick against the skin depth.
 
     One-dimensional sheet with the field on one side only: (sinh 2v + sin 2v)/(cosh 2v - cos 2v), v = wall/depth;
-    P. L. Dowell, Proc. IEE 113 (1966) 1387 (from memory).
+    P. L. Dowell, Proc. IEE 113 (1966) 1387 (from memory). For every wall: 1/v where it is thin, and from
+    20 skin depths up 1 to the last digit.
     """
     v = wall / depth
     if v > 20.0:
         return 1.0
-    return (math.sinh(2 * v) + math.sin(2 * v)) / (math.cosh(2 * v) - math.cos(2 * v))
+    # cosh 2v - cos 2v, which would lose its digits in thin walls
+    between = 2.0 * (math.sinh(v) ** 2 + math.sin(v) ** 2)
+    return (math.sinh(2 * v) + math.sin(2 * v)) / between
 
 
 def coil_resistance(coil: Coil, resistivity: float, frequency: float) -> float:

@@ -4,6 +4,7 @@ import os
 import sys
 from collections.abc import Iterator
 from contextlib import contextmanager
+from typing import TextIO
 
 import typer
 
@@ -46,11 +47,23 @@ def say(text: str) -> None:
 
 def drop_output() -> None:
     """Send what is still to be printed nowhere, or the end of the process would try and fail again."""
+    _drop(sys.stdout)
+
+
+def tell(message: str) -> None:
+    """Print a message on stderr; where that cannot be done, the exit code has to do."""
+    try:
+        print(message, file=sys.stderr, flush=True)
+    except OSError:
+        _drop(sys.stderr)
+
+
+def _drop(stream: TextIO) -> None:
     nowhere = os.open(os.devnull, os.O_WRONLY)
-    os.dup2(nowhere, sys.stdout.fileno())
+    os.dup2(nowhere, stream.fileno())
     os.close(nowhere)
 
 
 def _told(message: str, code: int) -> typer.Exit:
-    print(message, file=sys.stderr)
+    tell(message)
     return typer.Exit(code)

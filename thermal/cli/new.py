@@ -22,8 +22,13 @@ def new(
             say(text)
             return
         try:
-            with file.open("x", encoding="utf-8", newline="\n") as target:
-                target.write(text)
+            target = file.open("x", encoding="utf-8", newline="\n")
+            try:
+                with target:
+                    target.write(text)
+            except BaseException:
+                file.unlink(missing_ok=True)  # no half of a file
+                raise
         except FileExistsError:
             raise CaseError(f"{file}: is there already, name another file") from None
         except OSError as error:

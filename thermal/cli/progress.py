@@ -33,9 +33,15 @@ class Progress:
 
         surface, core = celsius(state.readings["surface"]), celsius(state.readings["core"])
         line = f"{self._names[state.stage]:<12} {state.time:9.1f} s   surface {surface:>8}   core {core:>8}"
-        print(f"\r{line[:WIDTH]:<{WIDTH}}", end="", file=sys.stderr, flush=True)
+        self._print(f"\r{line[:WIDTH]:<{WIDTH}}")
 
     def clear(self) -> None:
         """Wipe the line."""
         if self._shown:
-            print(f"\r{'':<{WIDTH}}\r", end="", file=sys.stderr, flush=True)
+            self._print(f"\r{'':<{WIDTH}}\r")
+
+    def _print(self, text: str) -> None:
+        try:
+            print(text, end="", file=sys.stderr, flush=True)
+        except OSError:  # a terminal that has gone is no reason to lose the run
+            self._shown = False

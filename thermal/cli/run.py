@@ -1,13 +1,13 @@
 """`thermal run`."""
 
-import sys
 from pathlib import Path
 from typing import Annotated
 
 import typer
 
 from thermal.cli.changes import Changes, overrides
-from thermal.cli.exits import INTERRUPTED, NOT_REACHED, exit_codes, say
+from thermal.cli.exits import INTERRUPTED, NOT_REACHED, exit_codes, say, tell
+from thermal.cli.material import Folder
 
 CODES = {"cannot_reach": NOT_REACHED, "limit": NOT_REACHED, "interrupted": INTERRUPTED}
 """Exit codes of the ways a run can end; 0 for the others."""
@@ -17,6 +17,7 @@ def run(
     case: Annotated[Path, typer.Argument(help="Case file (TOML).")],
     out: Annotated[Path | None, typer.Option(help="Folder for the results; results/<case name> if left out.")] = None,
     changes: Changes = None,
+    materials: Folder = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print the summary as JSON.")] = False,
     quiet: Annotated[bool, typer.Option("--quiet", help="Print the verdict only, no progress.")] = False,
     force: Annotated[bool, typer.Option("--force", help="Replace results that are there.")] = False,
@@ -34,7 +35,7 @@ def run(
         from thermal.report.files import demand_place, write_results
         from thermal.results.stages import stage_names
 
-        loaded = load_case(case, overrides(changes))
+        loaded = load_case(case, overrides(changes), materials=materials)
         folder = out if out is not None else Path("results") / loaded.name
         demand_place(folder, force)
         setup = build(loaded)
@@ -44,7 +45,7 @@ def run(
         finally:
             progress.clear()
         if history.status == "interrupted":
-            print("interrupted: writing what there is, marked incomplete", file=sys.stderr)
+            tell("interrupted: writing what there is, marked incomplete")
         written: Path | None = None
         try:
             write_results(folder, setup, loaded, history, force=force)

@@ -134,8 +134,9 @@ class SectionSource:
             )
             heat = self._gathered(heat)
             power = float(heat @ self.mesh.volume)
-            if not math.isfinite(power):
-                raise NoConvergence("the field in the workpiece is not a number")
+            if not 0.0 <= power < math.inf:
+                # Below zero by rounding: what is absorbed is lost in the digits of what flows in and out again.
+                raise NoConvergence("the power in the workpiece is below zero or no number")
             at_terminals = self.path.coil_impedance(profile.impedance, frequency) if self.path else 0j
             return EddyField(heat, power, at_terminals, H_surface, profile.mu_r, solves, fall)
 

@@ -8,6 +8,7 @@ from collections.abc import Iterable
 import numpy as np
 
 from thermal.case import Case
+from thermal.case.checks import MOST_ROWS
 from thermal.constants import ZERO_CELSIUS
 from thermal.results.dense import Sampled, sample
 from thermal.results.history import History
@@ -80,7 +81,8 @@ def _at_interval(setup: Setup, case: Case, history: History, ends: tuple[StageEn
     moments = {end.record.end: end.number for end in reversed(ends)}
     moments.setdefault(0.0, 0)
     if last > 0.0:
-        interval = case.output.interval or round_interval(last)
+        # A stage without a longest time may take longer than the case file lets expect.
+        interval = max(case.output.interval or round_interval(last), last / MOST_ROWS)
         for i in range(int(last / interval) + 1):
             time = float(f"{i * interval:.12g}")
             if time <= last:

@@ -15,6 +15,7 @@ from thermal.boundary.correlations import (
     cylinder_in_cross_flow,
     horizontal_cylinder,
     plate_in_parallel_flow,
+    vertical_cylinder,
     vertical_plate,
 )
 from thermal.errors import OutOfRange
@@ -28,11 +29,12 @@ def direct(air, name):
     """The loss under test and the coefficient from the correlations themselves."""
     lying = free_coefficient(air, TA, 0.05, horizontal_cylinder, CYLINDER_RAYLEIGH)
     upright = free_coefficient(air, TA, 0.2, vertical_plate, PLATE_RAYLEIGH)
+    round_side = free_coefficient(air, TA, 0.2, lambda Ra, Pr: vertical_cylinder(Ra, Pr, 4.0), PLATE_RAYLEIGH)
     across = forced_coefficient(air, TA, 0.05, 3.0, cylinder_in_cross_flow)
     along = forced_coefficient(air, TA, 0.2, 3.0, plate_in_parallel_flow)
     return {
         "lying": (cylinder_convection("c", air, TA, 0.05, 0.2, "horizontal"), lying),
-        "upright": (cylinder_convection("c", air, TA, 0.05, 0.2, "vertical"), upright),
+        "upright": (cylinder_convection("c", air, TA, 0.05, 0.2, "vertical"), round_side),
         "plate": (plate_convection("c", air, TA, 0.2), upright),
         "lying, blown at": (
             cylinder_convection("c", air, TA, 0.05, 0.2, "horizontal", 3.0),

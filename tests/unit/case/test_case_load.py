@@ -161,7 +161,7 @@ def test_overrides_by_dotted_path() -> None:
             "--set    supply.power: '60 kHz' is a frequency, a power is wanted (W, kW)",
         ),
         ("supply.powr", "60 kW", "--set    supply.powr: unknown key, did you mean 'power'?"),
-        ("coil.turns", "0", "--set    coil.turns: 0 turns: the number of turns must be finite and above zero"),
+        ("coil.turns", "0", "--set    coil.turns: 0 turns: the number of turns must be from 0.1 to 10000"),
         ("supply..power", "1 W", "--set    'supply..power' is not the path of a key, write it like supply.power"),
         ("coil.turns.x", "1", "--set    coil.turns.x: coil.turns is a value, not a table with keys"),
         (

@@ -55,8 +55,8 @@ def test_opening(text: str) -> None:
     [
         (quantity.Length, 50, 'write the unit: "50 mm" (accepted: m, mm, in)'),
         (quantity.Length, "50", 'write the unit: "50 mm" (accepted: m, mm, in)'),
-        (quantity.Length, True, 'write a number with its unit in quotes, like "50 mm"'),
-        (quantity.Length, ["50 mm"], 'write a number with its unit in quotes, like "50 mm"'),
+        (quantity.Length, True, "'true' is not a number with its unit, write both in quotes (units: m, mm, in)"),
+        (quantity.Length, ["50 mm"], "a list is not a number with its unit, write both in quotes (units: m, mm, in)"),
         (quantity.Length, "0 mm", "'0 mm' must be above zero"),
         (quantity.Length, "-5 mm", "'-5 mm' must be above zero"),
         (quantity.Depth, "-5 mm", "'-5 mm' must not be negative"),
@@ -64,8 +64,8 @@ def test_opening(text: str) -> None:
         (quantity.Temperature, "-300 °C", "'-300 °C' is below absolute zero (-273.15 °C)"),
         (quantity.Emissivity, 1.2, "'1.2' is not an emissivity, it lies above 0 and up to 1"),
         (quantity.Emissivity, 0.0, "'0.0' is not an emissivity, it lies above 0 and up to 1"),
-        (quantity.Turns, 0, "0 turns: the number of turns must be finite and above zero"),
-        (quantity.Turns, float("nan"), "nan turns: the number of turns must be finite and above zero"),
+        (quantity.Turns, 0, "0 turns: the number of turns must be from 0.1 to 10000"),
+        (quantity.Turns, float("nan"), "nan turns: the number of turns must be from 0.1 to 10000"),
         (
             quantity.Turns,
             "18",

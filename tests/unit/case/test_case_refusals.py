@@ -166,7 +166,7 @@ def test_the_sound_texts_are_sound() -> None:
             '"-300 °C"',
             "line 22  schedule.0.until.core (heat): '-300 °C' is below absolute zero (-273.15 °C)",
         ),
-        ("turns = 16", "turns = 0", "line 10  coil.turns: 0 turns: the number of turns must be finite and above zero"),
+        ("turns = 16", "turns = 0", "line 10  coil.turns: 0 turns: the number of turns must be from 0.1 to 10000"),
         # one of several
         (
             "emissivity = 0.8\n",

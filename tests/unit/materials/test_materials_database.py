@@ -47,6 +47,21 @@ unit = "1"
 CURIE = f'[curie_temperature]\nvalue = "770 °C"\n{CITE}[saturation_exponent]\nvalue = "3"\n{CITE}'
 
 
+SHIPPED = [
+    "aluminium-1050",
+    "aluminium-6082",
+    "brass-cuzn37",
+    "copper",
+    "iron",
+    "nickel",
+    "stainless-304",
+    "steel-42crmo4",
+    "steel-c10",
+    "steel-c45",
+    "titanium-grade2",
+]
+
+
 def load(folder: Path, text: str) -> materials.Material:
     path = folder / "mine.toml"
     path.write_text(text, encoding="utf-8")
@@ -58,7 +73,7 @@ def magnetic(lines: str) -> str:
 
 
 def test_shipped_names() -> None:
-    assert materials.names() == ["aluminium-6082", "copper", "iron", "stainless-304", "steel-c45"]
+    assert materials.names() == SHIPPED
     for key in materials.names():
         material = materials.get(key)
         assert material.key == key
@@ -67,9 +82,11 @@ def test_shipped_names() -> None:
         assert {"bright", "oxidised"} <= set(material.surfaces)
 
 
-def test_no_alias_stands_for_two_materials() -> None:
-    aliases = [alias for key in materials.names() for alias in (key, *materials.get(key).aliases)]
-    assert len(aliases) == len(set(aliases))
+def test_no_name_stands_for_two_files() -> None:
+    called = [alias.lower() for key in materials.names() for alias in (key, *materials.get(key).aliases)]
+    called += [*database.gas_names(), *database.lining_names()]
+    assert len(called) == len(set(called))
+    assert set(database.taken()) == set(called)
 
 
 def test_shipped_numbers_in_si() -> None:
@@ -92,15 +109,6 @@ def test_data_limits() -> None:
     assert limits["specific_heat"] == pytest.approx(1473.15)
     assert limits["resistivity"] == pytest.approx(1473.15)
     assert limits["emissivity (oxidised)"] == pytest.approx(1500.15)
-
-
-def test_wiedemann_franz_and_dulong_petit_are_plausible() -> None:
-    # Lorenz number of metals 2.1e-8 to 3.6e-8 V2/K2; specific heat about 3R per mole of atoms.
-    for key, molar in (("copper", 63.546), ("iron", 55.845), ("aluminium-6082", 26.98)):
-        material = materials.get(key)
-        for T in (293.15, 600.0, 800.0):
-            assert 2.1e-8 < float(material.conductivity(T) * material.resistivity(T)) / T < 3.6e-8
-        assert 0.9 < float(material.specific_heat(293.15)) * molar / 1000.0 / (3 * 8.314) < 1.06
 
 
 def test_lining() -> None:
@@ -150,13 +158,13 @@ def test_magnetic_laws_of_the_user(tmp_path: Path) -> None:
 
 
 def test_unknown_names() -> None:
-    known = "(known: aluminium-6082, copper, iron, stainless-304, steel-c45)"
+    known = f"(known: {', '.join(SHIPPED)})"
     for name, hint in (("steel-c54", ", did you mean 'steel-c45'?"), ("xyz", "")):
         with pytest.raises(MaterialError) as refusal:
             materials.get(name)
         assert str(refusal.value) == f"unknown material '{name}'{hint} {known}"
-    with pytest.raises(MaterialError, match=r"^unknown gas 'argon' \(known: air\)$"):
-        database.gas("argon")
+    with pytest.raises(MaterialError, match=r"^unknown gas 'neon' \(known: air, argon, helium, nitrogen\)$"):
+        database.gas("neon")
     with pytest.raises(MaterialError, match=r"did you mean 'castable-alumina'\?"):
         database.lining("castable-alumna")
 
@@ -194,7 +202,7 @@ REFUSALS = {
     "infinite": (
         "[50, 40, 30]",
         "[50, inf, 30]",
-        "conductivity.value: 'inf W/(m K)' is not a number with a unit, write it like \"50 W/(m K)\" (units: W/(m K))",
+        "conductivity.value: every entry must be a finite number",
     ),
     "absolute zero": ("T = [20,", "T = [-300,", "conductivity.T: '-300 °C' is below absolute zero (-273.15 °C)"),
     "missing source": (
@@ -209,7 +217,7 @@ REFUSALS = {
         '"guessed"',
         "density.kind: 'guessed' is not one of measured, recommended, estimated, assumed, memory",
     ),
-    "negative uncertainty": ('"5 %"', '"-5 %"', "density.uncertainty: must not be negative"),
+    "negative uncertainty": ('"5 %"', '"-5 %"', "density.uncertainty: must be from 0 to 100 %"),
     "unknown rule": (
         'rule = "linear"',
         'rule = "cubic"',
@@ -296,7 +304,7 @@ def test_laws_need_a_curie_temperature_above_room_temperature(tmp_path: Path) ->
 def test_unreadable_files(tmp_path: Path) -> None:
     with pytest.raises(MaterialError, match=r"nowhere\.toml: cannot be read \(No such file or directory\)"):
         database.load_file("nowhere.toml")
-    with pytest.raises(MaterialError, match=r"mine\.toml: not valid TOML: .*line 1"):
+    with pytest.raises(MaterialError, match=r"mine\.toml: line 1: this is not TOML: invalid value"):
         load(tmp_path, "a = = 1")
 
 

@@ -52,7 +52,7 @@ def test_the_energy_chain_adds_up(run_of):
         label, *figures = line.strip().rsplit(maxsplit=3)
         if len(figures) == 3 and "-" not in label[:2]:
             percent[label.strip()] = float(figures[1])
-    assert percent.pop("supply output at the coil terminals") == 100.0
+    assert percent.pop("supply output, leads and coil") == 100.0
     absorbed = percent.pop("absorbed in the workpiece")
     assert absorbed + percent.pop("lost in coil copper and leads") == pytest.approx(100.0, abs=0.11)
     assert "lost out of the bore" in percent
@@ -123,13 +123,13 @@ def test_a_single_piece_is_told_to_be_an_average(run_of):
 
 
 def test_cautions_follow_what_the_case_holds(run_of):
-    heater = " ".join(each.full for each in cautions(*run_of("heater")[::2]))
+    heater = " ".join(each.full for each in cautions_of(*run_of("heater")[::2]))
     for word in ("Hot metal", "pacemakers", "prove dead", "Cooling water", "Fumes", "not an assessment"):
         assert word in heater
     assert "Near melting" not in heater
     assert "Holding" not in heater
-    assert any(each.full.startswith("Holding") for each in cautions(*run_of("tube")[::2]))
-    cold = cautions(*run_of("heater", schedule='[{stage = "transfer", duration = "5 s"}]')[::2])
+    assert any(each.full.startswith("Holding") for each in cautions_of(*run_of("tube")[::2]))
+    cold = cautions_of(*run_of("heater", schedule='[{stage = "transfer", duration = "5 s"}]')[::2])
     assert len(cold) == 1
 
 
@@ -139,7 +139,7 @@ def test_aluminium_near_melting_is_told(run_of):
         workpiece__material="aluminium-6082",
         schedule__0__until='{surface = "500 °C"}',
     )
-    told = " ".join(each.full for each in cautions(setup, history))
+    told = " ".join(each.full for each in cautions_of(setup, history))
     assert "aluminium softens and runs without changing colour" in told
     assert "explodes with water" in told
 
@@ -199,9 +199,19 @@ def test_notes_stand_under_the_verdict_and_cautions_last(run_of):
 def test_every_caution_is_one_line(run_of, kind, changes):
     setup, case, history = run_of(kind, **changes)
     lines = result_text(setup, case, history, None).rstrip().split("\n\n")[-1].splitlines()[1:]
-    told = cautions(setup, history)
+    told = cautions_of(setup, history)
     assert lines == [f"  - {each.short}" for each in told]
     assert all(each.short.split()[0].rstrip(":,") == each.full.split()[0].rstrip(":,") for each in told[1:])
+
+
+def test_a_shielding_gas_suffocates(run_of):
+    in_argon = cautions_of(*run_of("heater", surroundings__gas="argon")[::2])
+    in_air = cautions_of(*run_of("heater")[::2])
+    assert next(each.full for each in in_argon if each not in in_air).startswith("Shielding gas")
+
+
+def cautions_of(setup, history):
+    return cautions(setup, float(history.readings["maximum"].max()))
 
 
 def rows_of(table):
