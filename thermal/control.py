@@ -32,6 +32,10 @@ class Control(Protocol):
         """Longest step [s] in which its answer stays small enough to be followed."""
         ...
 
+    def slack(self, readings: dict[str, float], loss: float, memory: Array) -> float:
+        """How far its reading must fall [K] before it asks for power; 0 where it does."""
+        ...
+
     def demand(self, readings: dict[str, float], loss: float, memory: Array) -> Demand:
         """Demand at readings [K], present loss [W] and memory (2,): a shift of the set point [K] and a power [W]."""
         ...
@@ -49,6 +53,10 @@ class FixedDrive:
     needs_readings: bool = False
     gain: tuple[str, float, float] = ("surface", 0.0, 1.0)
     longest_step: float = math.inf
+
+    def slack(self, readings: dict[str, float], loss: float, memory: Array) -> float:
+        """None: it asks the same throughout."""
+        return 0.0
 
     def demand(self, readings: dict[str, float], loss: float, memory: Array) -> Demand:
         """The demand."""
@@ -88,9 +96,12 @@ class HoldTemperature:
 
     def demand(self, readings: dict[str, float], loss: float, memory: Array) -> Demand:
         """Absorbed power [W], never negative."""
-        off = self._surface_set_point(readings, memory) - self._held(readings)
-        power = loss + self.capacity * off / self.response + float(memory[1])
+        power = self._wanted(readings, loss, memory)
         return Demand("absorbed_power", power) if power > 0.0 else Demand("off", 0.0)
+
+    def slack(self, readings: dict[str, float], loss: float, memory: Array) -> float:
+        """How far the reading must fall [K] before the wanted power is above zero."""
+        return max(0.0, -self._wanted(readings, loss, memory)) * self.response / self.capacity
 
     def memory_rates(self, readings: dict[str, float], memory: Array, clipped: int) -> Array:
         """Rates of the shift of the set point [K/s] and of J [W/s]; while clipped only towards what is possible."""
@@ -104,6 +115,11 @@ class HoldTemperature:
     def longest_step(self) -> float:
         """Twenty times the response: beyond that, the stages of a step ask for more than the supply has."""
         return RESPONSES_A_STEP * self.response
+
+    def _wanted(self, readings: dict[str, float], loss: float, memory: Array) -> float:
+        """Power [W] it would take, below zero where the workpiece is too hot."""
+        off = self._surface_set_point(readings, memory) - self._held(readings)
+        return loss + self.capacity * off / self.response + float(memory[1])
 
     @property
     def _inside(self) -> bool:

@@ -196,12 +196,13 @@ class _Watch:
         return any(self._at_rest(count, distance, elapsed) for count in LATELY if len(self._lately) >= count)
 
     def _at_rest(self, count: int, distance: float, elapsed: float) -> bool:
-        absorbed, lost, steps, distances = np.array(self._lately)[-count:].T
+        lately = list(self._lately)[-count:]
         middle = count // 2
-        later = slice(middle + 1, None)
-        net = abs(float(absorbed[later].sum() - lost[later].sum()))
-        if net > SETTLED * max(absorbed[later].sum(), lost[later].sum()):
+        absorbed = sum(each[0] for each in lately[middle + 1 :])
+        lost = sum(each[1] for each in lately[middle + 1 :])
+        if abs(absorbed - lost) > SETTLED * max(absorbed, lost):
             return False
+        _, _, steps, distances = np.array(lately).T
         times = np.cumsum(steps)
         first = (distances[0] - distances[middle]) / (times[middle] - times[0])
         second = (distances[middle] - distances[-1]) / (times[-1] - times[middle])

@@ -24,7 +24,7 @@ class Setup:
     losses : place -> face -> losses, all faces of the mesh.
     stages : in order ; depths : reading name -> depth [m] under the outer surface.
     T_initial : [K] ; T_end : [K] the hottest the run may get (liquidus, or the end of the data).
-    mass : [kg] ; tolerance : [K] per step.
+    gas : key of the gas around the workpiece ; mass : [kg] ; tolerance : [K] per step.
     assumptions, notes : for the reader of the result.
     """
 
@@ -41,6 +41,7 @@ class Setup:
     depths: dict[str, float]
     T_initial: float
     T_end: float
+    gas: str
     mass: float
     frequency: float
     tolerance: float

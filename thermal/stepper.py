@@ -22,6 +22,8 @@ SHRINK_AT_MOST = 0.2
 SAFETY = 0.85
 STEP_AT_LEAST = 1e-9
 LANDINGS_AT_MOST = 30
+NEARLY_ON = 1.0
+"""A controller counts as about to ask for power within this many kelvin."""
 LANDING = 1e-3
 """A stop is met within this many kelvin."""
 
@@ -116,8 +118,7 @@ class Stepper:
         readings = self._readings(extended)
         rates, point, field = self._drive(here, readings, memory, guess)
         assert here.dT_dH is not None
-        clipped = point is self._idle_point or point.limit is not None
-        feedback = None if clipped else self._feedback(here.dT_dH, field, rates.accounts)
+        feedback = self._feedback(here, readings, memory, point, field, guess)
         fading = self._fading(here.dT_dH, field, rates.accounts)
         matrix = Matrix(here.conductance, here.dT_dH, tuple(here.slopes), feedback, fading)
         if trend is None:
@@ -180,11 +181,7 @@ class Stepper:
 
             usable = guess if guess is not None and guess[1].power > 0.0 else None
             point, field = self._supply.operate(field_of, demand, usable)
-        accounts = here.accounts
-        accounts[0] = field.power
-        if setup.has_coil:
-            drawn = (point.supply_power, point.coil_loss, point.tank_loss)
-            accounts[1 : 1 + len(ELECTRICAL)] = [setup.share * watts for watts in drawn]
+        accounts = self._booked(here.accounts, point, field)
         clipped = -1 if demand.kind == "off" else int(point.limit is not None)
         memory_rates = control.memory_rates(readings, memory, clipped)
         return Rates(here.heat_flow + self._volume * field.heat, accounts, memory_rates), point, field
@@ -208,18 +205,47 @@ class Stepper:
             return None
         return Fading(self._volume * field.fall * dT_dH, self._per_watt(field, accounts))
 
-    def _feedback(self, dT_dH: Array, field: EddyField, accounts: Array) -> Feedback | None:
-        """What the controller adds to the matrix: without it, it would hold the steps to its response time."""
-        reading, gain, reset = self.stage.control.gain
-        if gain == 0.0 or field.power <= 0.0:
+    def _feedback(
+        self,
+        here: _Conduction,
+        readings: dict[str, float],
+        memory: Array,
+        point: OperatingPoint,
+        field: EddyField,
+        guess: tuple[OperatingPoint, EddyField] | None,
+    ) -> Feedback | None:
+        """What the controller adds to the matrix: without it, it would hold the steps to its response time.
+
+        A controller that is off but about to ask for power counts as well, with the field it had last: else a hold
+        can end every step with the power off and book what it needs in between.
+        """
+        control = self.stage.control
+        reading, gain, reset = control.gain
+        if gain == 0.0 or point.limit is not None:
             return None
+        if point is self._idle_point:
+            if guess is None or control.slack(readings, here.lost, memory) > NEARLY_ON:
+                return None
+            point, field = guess
+        if field.power <= 0.0:
+            return None
+        assert here.dT_dH is not None
         if reading == "mean":
-            pull = gain * self.setup.sampler.volume_share * dT_dH
+            pull = gain * self.setup.sampler.volume_share * here.dT_dH
         else:
-            pull = np.zeros_like(dT_dH)
-            pull[-1] = gain * dT_dH[-1]
+            pull = np.zeros_like(here.dT_dH)
+            pull[-1] = gain * here.dT_dH[-1]
         share = self._volume * field.heat / field.power
-        return Feedback(share, pull, self._per_watt(field, accounts), reset)
+        booked = self._booked(np.zeros(len(self.accounts)), point, field)
+        return Feedback(share, pull, self._per_watt(field, booked), reset)
+
+    def _booked(self, accounts: Array, point: OperatingPoint, field: EddyField) -> Array:
+        """The accounts (p,) [W] with what the workpiece absorbs and what supply, coil and tank give for it."""
+        accounts[0] = field.power
+        if self.setup.has_coil:
+            drawn = (point.supply_power, point.coil_loss, point.tank_loss)
+            accounts[1 : 1 + len(ELECTRICAL)] = [self.setup.share * watts for watts in drawn]
+        return accounts
 
     def _readings(self, extended: Array) -> dict[str, float]:
         """Every reading [K] by name."""
@@ -265,7 +291,7 @@ class Stepper:
     def error_of(self, taken: Step, start: Moment, end: Moment) -> float:
         """Largest embedded error of a step [K] over the tolerance."""
         slope = np.maximum(start.matrix.dT_dH, end.matrix.dT_dH)
-        return float(np.max(np.abs(taken.error) * slope)) / self.setup.tolerance
+        return float((np.abs(taken.error) * slope).max()) / self.setup.tolerance
 
     def advance(self, start: Moment, step: float, most: float) -> tuple[Step, Moment, float, float, int]:
         """The next accepted step.

@@ -68,6 +68,54 @@ def test_slug_behaves_as_aluminium():
     assert 0.35 < efficiency.min() and efficiency.max() < 0.62
 
 
+def test_pin_behaves_as_on_a_bench_heater():
+    setup = build(load_case(CASES[0].parent / "bench_heater.toml"))
+    history = run(setup)
+    heat, hold = history.stages[:2]
+    at_260 = (history.stage == 0).nonzero()[0][-1]
+
+    # Seconds to minutes for a small piece on a heater of this class (common practice); the current limit binds while
+    # the cold steel has little resistance.
+    assert 20.0 < heat.end < 60.0
+    assert heat.limits["current"] == [(0.0, pytest.approx(13.6, abs=1.0))]
+    # 33.5 kWh/t at 260 °C, 34.0 at the 263 °C the pin evens out to (EN 1993-1-2 3.4.1.2, integrated).
+    assert history.energy["stored"][at_260] / setup.mass / JOULE_PER_KG == pytest.approx(34.0, abs=0.3)
+    # Coil with a wide gap at 200 kHz around cold steel: 0.75-0.9 (common practice).
+    assert 0.75 < 1.0 - history.coil_loss[0] / history.supply_power[0] < 0.9
+    # By hand: 21.1 cm2 at 260 °C lose 7.5-9.6 W at an emissivity of 0.28 and 10-14 W/(m2 K).
+    assert 7.5 < history.absorbed_power[history.stage == 1][-1] < 9.6
+    assert hold.reason == "time"
+
+
+def test_pipe_behaves_as_a_thick_pipe():
+    setup = build(load_case(CASES[0].parent / "pipe_preheat.toml"))
+    history = run(setup)
+    at_300, held, end = [(history.stage == number).nonzero()[0][-1] for number in range(3)]
+
+    # 39.7 kWh/t at 300 °C (EN 1993-1-2 3.4.1.2, integrated) at 9.5-9.7 kW, a few per cent of it lost.
+    assert history.energy["stored"][at_300] / setup.mass / JOULE_PER_KG == pytest.approx(39.7, abs=0.2)
+    assert history.time[at_300] == pytest.approx(88.5, abs=2.0)
+    # Flux times wall over twice the conductivity: 12.5 K between outside and bore, less a skin depth of it.
+    assert history.readings["spread"][at_300] == pytest.approx(12.0, abs=0.7)
+    # Even after the hold. By hand, openings of 2 pi r^2 less what the one sees of the other: 42 W out of the bore.
+    assert abs(history.readings["spread"][held]) < 0.5
+    assert history.losses["loss: bore"][held] == pytest.approx(42.0, abs=0.5)
+    # 370-400 W from 5.8 kg of 0.6 kJ/(kg K): a tenth of a kelvin a second while the flange is set.
+    assert history.absorbed_power[held] == pytest.approx(385.0, abs=25.0)
+    assert history.readings["mean"][held] - history.readings["mean"][end] == pytest.approx(20.0, abs=2.0)
+
+
+def test_a_pipe_longer_than_the_coil_loses_out_of_its_bore_as_the_part_inside():
+    path = CASES[0].parent / "pipe_preheat.toml"
+
+    def watts(length):
+        setup = build(load_case(path, {"workpiece.length": length}))
+        (loss,) = setup.losses["coil"]["bore"]
+        return loss.flux(600.0, 600.0)[0] * float(setup.section.mesh.faces["bore"].area[0])
+
+    assert watts("1 m") == pytest.approx(watts("340 mm"), rel=1e-12)
+
+
 def test_a_piece_that_has_cooled_may_be_reheated_below_its_initial_temperature():
     history = run_case(
         from_text(

@@ -184,3 +184,43 @@ def test_a_reading_inside_is_held_through_the_surface(reading: str) -> None:
     assert np.abs(off[time >= 400.0]).max() <= 1.0
     assert abs(off[-1]) <= 0.3
     assert sign_changes(off) <= 2
+
+
+def test_a_hold_entered_from_above_does_not_live_on_steps_without_power():
+    # The surface is above the set point when the hold begins. Off at the start of a step, the controller must still be
+    # in the matrix, or every step of the hold ends without power (350 steps, and 0.2 K too hot).
+    case = from_text(
+        """
+format = 1
+[workpiece]
+shape = "tube"
+outer_diameter = "88.9 mm"
+wall = "10 mm"
+length = "300 mm"
+material = "steel-c45"
+surface = "machined"
+[coil]
+turns = 14
+inner_diameter = "125 mm"
+length = "340 mm"
+tube = "14 mm"
+[supply]
+power = "20 kW"
+frequency = "4 kHz"
+[[schedule]]
+stage = "heat"
+drive = { supply_power = "10 kW" }
+until = { mean = "300 °C" }
+longest = "300 s"
+[[schedule]]
+stage = "hold"
+at = { surface = "300 °C" }
+duration = "120 s"
+""",
+        ".",
+    )
+    history = run(build(case))
+    late = (history.stage == 1) & (history.time > history.time[-1] - 60.0)
+    assert history.steps < 100
+    assert np.all(history.absorbed_power[late] > 0.9 * history.loss_power[late])
+    assert history.readings["surface"][late] == pytest.approx(573.15, abs=0.01)

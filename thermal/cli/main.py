@@ -5,9 +5,11 @@ from typing import Annotated
 import typer
 
 from thermal.cli import material
+from thermal.cli.bench import bench
 from thermal.cli.check import check
 from thermal.cli.new import new
 from thermal.cli.run import run
+from thermal.cli.verify import verify
 
 app = typer.Typer(
     help="Transient heating of metal workpieces by induction: time to temperature, section, power, energy.",
@@ -38,4 +40,6 @@ def options(
 app.command()(new)
 app.command()(check)
 app.command()(run)
+app.command()(verify)
+app.command()(bench)
 app.add_typer(material.app, name="material")

@@ -145,14 +145,17 @@ def rosenbrock_step(
     n, p = H.size, first.accounts.size
     # Increments of cells, accounts and further unknowns, a row a stage.
     k = np.empty((STAGES, n + p + extra.size))
+    nothing = np.zeros(k.shape[1])
     here = first
     for i in range(STAGES):
-        carried = np.zeros(k.shape[1])
-        if i > 0:
+        if i == 0:
+            carried = nothing
+            right = step * here.heat_flow
+        else:
             ahead = _ALPHA[i] @ k[:i]
             here = rates(H + ahead[:n], extra + ahead[n + p :])
             carried = _CARRIED[i] @ k[:i]
-        right = step * here.heat_flow + volume * carried[:n]
+            right = step * here.heat_flow + volume * carried[:n]
         account = step * here.accounts
         # Further unknowns have no row in the matrix (treated explicitly), unless they are the memory of a feedback.
         k[i, n + p :] = step * here.extra
@@ -178,7 +181,7 @@ def rosenbrock_step(
         for index, cells, slope in matrix.slopes:
             loss = shift * (slope * solved[cells])
             right[cells] -= loss
-            account[index] += float(np.sum(loss))
+            account[index] += loss.sum() if isinstance(cells, slice) else loss
         if matrix.fading is not None:
             faded = shift * (matrix.fading.fall * solved)
             right -= faded

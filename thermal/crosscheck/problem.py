@@ -45,13 +45,17 @@ class PrescribedSource:
 
     mesh: Mesh
     law: Callable[[Array, float], Array]
+    _plain: Array = field(init=False, repr=False)
+
+    def __post_init__(self) -> None:
+        object.__setattr__(self, "_plain", np.ones_like(self.mesh.r))
 
     def at(self, T: Array) -> FieldOf:
         """Field as a function of the excitation at T (n,) [K]."""
 
         def field_of(excitation: float, frequency: float, guess: EddyField | None) -> EddyField:
             heat = self.law(T, excitation)
-            return EddyField(heat, float(heat @ self.mesh.volume), 0j, 0.0, np.ones_like(T), 1)
+            return EddyField(heat, float(heat @ self.mesh.volume), 0j, 0.0, self._plain, 1)
 
         return field_of
 
@@ -180,6 +184,7 @@ class Problem:
             depths=self.depths,
             T_initial=self.T_initial,
             T_end=self.T_end,
+            gas="air",
             mass=self.material.density * float(self.mesh.volume.sum()),
             frequency=self.frequency,
             tolerance=self.tolerance,

@@ -70,12 +70,13 @@ class RadialSolver:
         inner, outer = edges[:-1], edges[1:]
         self._minus_h = inner - outer
         if mesh.kind == "cylindrical":
-            self._inner, self._outer = inner, outer
+            # As complex numbers: products of one kind are quicker than mixed ones.
+            self._inner, self._outer = inner.astype(complex), outer.astype(complex)
             self._per_volume = 1.0 / (0.5 * (outer**2 - inner**2))
             self._surface = float(outer[-1])
             self._bore = 0.5j * MU_0 * float(inner[0]) ** 2
         else:
-            self._inner = self._outer = np.ones_like(inner)
+            self._inner = self._outer = np.ones_like(inner, dtype=complex)
             self._per_volume = 1.0 / (outer - inner)
             self._surface = 1.0
             self._bore = 0j
@@ -92,10 +93,10 @@ class RadialSolver:
         NoConvergence : the equations are singular (a property is not a number).
         """
         omega = 2.0 * math.pi * frequency
-        gamma = ((1.0 + 1.0j) * math.sqrt(0.5 * omega * MU_0)) * np.sqrt(mu_r / resistivity)
-        e = np.exp(gamma * self._minus_h)
+        per_depth = math.sqrt(0.5 * omega * MU_0) * np.sqrt(mu_r / resistivity)
+        e = np.exp((1.0 + 1.0j) * (per_depth * self._minus_h))
         near = 1.0 - e
-        scale = resistivity * gamma / (1.0 + e)
+        scale = (1.0 + 1.0j) * (resistivity * per_depth) / (1.0 + e)
         # rho gamma csch(t) g and rho gamma tanh(t/2) with t = gamma h.
         k = scale * e * self._g_twice / near
         half = scale * near

@@ -2,8 +2,6 @@
 
 from typing import NamedTuple
 
-import numpy as np
-
 from thermal.case import Case
 from thermal.constants import ZERO_CELSIUS
 from thermal.control import HoldTemperature
@@ -73,6 +71,11 @@ MELTING = Caution(
 MELTING_ALUMINIUM = Caution(
     "Near melting: aluminium runs without changing colour, and melt explodes with water and damp.",
     f"Near melting: aluminium softens and runs without changing colour. {_MELT}",
+)
+SUFFOCATION = Caution(
+    "Shielding gas displaces the air and suffocates without warning: ventilate, measure oxygen.",
+    "Shielding gas: nitrogen, argon and helium displace the air and suffocate without warning, in pits, hoods and "
+    "closed rooms first: ventilate, measure oxygen, as local rules ask.",
 )
 HOLDING = Caution(
     "Holding: a control that reads wrong heats on: have an independent over-temperature cut-out.",
@@ -147,9 +150,11 @@ def _not_held(setup: Setup, history: History) -> list[str]:
     return told
 
 
-def cautions(setup: Setup, history: History) -> tuple[Caution, ...]:
-    """What can hurt people in what the case describes; no compliance assessment."""
-    hottest = float(np.max(history.readings["maximum"]))
+def cautions(setup: Setup, hottest: float) -> tuple[Caution, ...]:
+    """What can hurt people in what the case describes; no compliance assessment.
+
+    hottest : [K] anywhere in the workpiece at any time.
+    """
     powered = any(stage.place == "coil" for stage in setup.stages)
     told = [ALWAYS]
     if hottest > WARM:
@@ -158,6 +163,8 @@ def cautions(setup: Setup, history: History) -> tuple[Caution, ...]:
         told += [COIL_FIELD, VOLTAGE, COOLING_WATER]
     if hottest > FUMES:
         told.append(SMOKE)
+    if setup.gas != "air":
+        told.append(SUFFOCATION)
     if powered and setup.material.curie_temperature is None:
         told.append(FORCE)
     solidus = setup.material.solidus

@@ -29,7 +29,7 @@ from thermal.report.style import (
     styled,
 )
 from thermal.report.versions import own_version
-from thermal.report.words import piece_in_words
+from thermal.report.words import piece_in_words, power_unit
 from thermal.results.dense import Sampled, sample
 from thermal.results.history import History
 from thermal.results.stages import limit_spans, off_spans, stage_ends
@@ -161,14 +161,15 @@ def _short(name: str) -> str:
 
 def _powers(axes: "Axes", setup: Setup, fine: Sampled, clock: Clock) -> None:
     time = fine.time / clock.seconds
+    unit, watts = power_unit(float(fine.series["supply_power" if setup.has_coil else "absorbed_power"].max()))
     axes.plot(
-        time, fine.series["absorbed_power"] / 1e3, color="#00776B", linestyle="-", label="absorbed\nby the workpiece"
+        time, fine.series["absorbed_power"] / watts, color="#00776B", linestyle="-", label="absorbed\nby the workpiece"
     )
     if setup.has_coil:
-        supply = fine.series["supply_power"] / 1e3
+        supply = fine.series["supply_power"] / watts
         axes.plot(time, supply, color="#8C4A94", linestyle=(0, (6, 2)), label="from the supply\n(whole coil)")
     axes.set_ylim(bottom=0.0)
-    axes.set_ylabel("power, kW")
+    axes.set_ylabel(f"power, {unit}")
     axes.legend(loc="upper left", bbox_to_anchor=(1.0, 1.08), frameon=False, fontsize=8.5, labelspacing=0.8)
 
 

@@ -11,7 +11,7 @@ from thermal.eddy.exact import skin_depth
 from thermal.interfaces import Demand, EddyField, OperatingPoint
 from thermal.report.tables import COIL, PIECE
 from thermal.report.text import bullets, columns
-from thermal.report.words import piece_in_words
+from thermal.report.words import piece_in_words, power_unit
 from thermal.results.verdict import LIMIT_WORDS, celsius
 from thermal.setup import Setup
 
@@ -96,18 +96,20 @@ def _section(case: Case) -> tuple[str, float]:
 
 def _condition_table(setup: Setup, case: Case, found: tuple[Condition, ...]) -> str:
     name, size = _section(case)
+    powers = [each.point.supply_power if setup.has_coil else each.field.power for each in found]
+    unit, watts = power_unit(max(powers))
     rows = [
         ["", "of", *(f"{each.name}, {celsius(each.T)}" for each in found)],
         ["relative permeability at the surface", PIECE, *(f"{each.field.mu_r[-1]:.3g}" for each in found)],
         ["skin depth, mm", PIECE, *(f"{each.skin_depth * 1e3:.3g}" for each in found)],
         [f"{name} / skin depth", PIECE, *(f"{size / each.skin_depth:.3g}" for each in found)],
         ["field at the surface, kA/m rms", PIECE, *(f"{each.field.H_surface_rms / 1e3:.3g}" for each in found)],
-        ["absorbed power, kW", PIECE, *(f"{each.field.power / 1e3:.3g}" for each in found)],
+        [f"absorbed power, {unit}", PIECE, *(f"{each.field.power / watts:.3g}" for each in found)],
     ]
     if setup.has_coil:
         points = [each.point for each in found]
         rows += [
-            ["supply power, kW", COIL, *(f"{point.supply_power / 1e3:.3g}" for point in points)],
+            [f"supply power, {unit}", COIL, *(f"{point.supply_power / watts:.3g}" for point in points)],
             ["coil current, A rms", COIL, *(f"{point.coil_current_rms:.4g}" for point in points)],
             ["coil voltage, V rms", COIL, *(f"{point.coil_voltage_rms:.4g}" for point in points)],
             ["power factor at the coil terminals", COIL, *(f"{point.power_factor:.2g}" for point in points)],

@@ -45,7 +45,7 @@ def summary(setup: Setup, case: Case, history: History) -> dict[str, Any]:
         "assumptions": list(setup.assumptions),
         "notes": list(remarks(setup, case, history)),
         "expectation": list(expectation(case)),
-        "cautions": [each.full for each in cautions(setup, history)],
+        "cautions": [each.full for each in cautions(setup, float(history.readings["maximum"].max()))],
         "sources": [
             {"quantity": f"{setup.material.key}: {name}", "source": each.key, "where": each.locator, "kind": each.kind}
             for name, each in setup.material.sources()

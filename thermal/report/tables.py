@@ -9,6 +9,7 @@ from thermal.case import Case
 from thermal.constants import ZERO_CELSIUS
 from thermal.report.advice import cautions, expectation, remarks
 from thermal.report.text import bullets, columns, paragraph
+from thermal.report.words import power_unit, reading_in_words
 from thermal.results.balance import relative_residual
 from thermal.results.history import Array, History
 from thermal.results.stages import limit_spans, stage_ends
@@ -27,6 +28,8 @@ LOSS_WORDS = {
 }
 NOTHING = 1e-9
 """Share of the largest energy below which a row says nothing."""
+FLICKER = 1e-2
+"""Share of the largest absorbed power below which the power counts as off in the table of peak values."""
 PIECE, COIL = "this piece", "whole coil"
 REASON_WORDS = {"target": "target met", "time": "time is up"}
 NO_COIL = (
@@ -54,7 +57,7 @@ def result_text(setup: Setup, case: Case, history: History, folder: Path | None)
     parts.append(f"Assumed: {len(setup.assumptions)} values; `thermal check` and summary.json list them.")
     if folder is not None:
         parts.append(paragraph(f"Files: {folder}"))
-    short = [each.short for each in cautions(setup, history)]
+    short = [each.short for each in cautions(setup, float(history.readings["maximum"].max()))]
     parts.append(_headed("Cautions, in short (in full in summary.json)", bullets(short)))
     return "\n\n".join(parts) + "\n"
 
@@ -73,7 +76,12 @@ def stage_table(setup: Setup, history: History) -> str:
         if name == "spread":
             rows.append(["spread (surface - core), K", *(f"{round(float(series[i])):+d}" for i in moments)])
         else:
-            rows.append([f"{name}, °C", *(str(round(float(series[i]) - ZERO_CELSIUS)) for i in moments)])
+            rows.append(
+                [
+                    f"{reading_in_words(name, setup)}, °C",
+                    *(str(round(float(series[i]) - ZERO_CELSIUS)) for i in moments),
+                ]
+            )
     depths = [f"{depth_of_maximum(history, i) * 1e3:.1f}" for i in moments]
     rows.append(["depth of the maximum, mm", *depths])
     return columns(rows)
@@ -95,7 +103,7 @@ def energy_table(setup: Setup, history: History) -> str:
         rows.append([label, f"{energy / joules:.{digits}f}", share, f"{per_tonne:.1f}"])
 
     if setup.has_coil:
-        add("supply output at the coil terminals", spent["supply"])
+        add("supply output, leads and coil", spent["supply"])
         add("  lost in coil copper and leads", spent["coil"])
         add("  lost in the tank", spent["tank"])
     add("absorbed in the workpiece", spent["absorbed"])
@@ -118,7 +126,8 @@ def energy_table(setup: Setup, history: History) -> str:
 
 def peak_table(setup: Setup, history: History) -> str:
     """Largest and smallest values of the run, and whether each is of this piece or of the whole coil."""
-    on = history.absorbed_power > 0.0
+    # A hold that begins or goes on again passes through next to no power for a moment: no smallest value to be told.
+    on = history.absorbed_power > FLICKER * history.absorbed_power.max()
     outer = setup.section.mesh.faces["outer"]
     flux = history.absorbed_power / float(outer.area.sum())
     rows = [["", "of", "largest", "smallest with power on"]]
@@ -129,13 +138,15 @@ def peak_table(setup: Setup, history: History) -> str:
             rows.append([label, of, f"{np.nanmax(values):.{digits}f}", f"{np.nanmin(values):.{digits}f}"])
 
     if setup.has_coil:
-        add("supply power, kW", COIL, history.supply_power / 1e3, 2)
+        unit, watts = power_unit(float(history.supply_power.max()))
+        add(f"supply power, {unit}", COIL, history.supply_power / watts, 2 if unit == "kW" else 1)
         add("coil current, A rms", COIL, history.coil_current_rms, 0)
         add("coil voltage, V rms", COIL, history.coil_voltage_rms, 1)
         add("power factor at the coil terminals", COIL, history.power_factor, 3)
         drawn = np.where(on, setup.share * history.supply_power, np.nan)
         add("electrical efficiency (absorbed/supply), %", COIL, 100.0 * history.absorbed_power / drawn, 1)
-    add("absorbed power, kW", PIECE, history.absorbed_power / 1e3, 2)
+    unit, watts = power_unit(float(history.absorbed_power.max()))
+    add(f"absorbed power, {unit}", PIECE, history.absorbed_power / watts, 2 if unit == "kW" else 1)
     add("absorbed per surface, W/cm2", PIECE, flux / 1e4, 1)
     add("field at the surface, kA/m rms", PIECE, history.H_surface_rms / 1e3, 2)
     unit, hertz = ("kHz", 1e3) if setup.frequency >= 1e3 else ("Hz", 1.0)

@@ -22,6 +22,11 @@ def paragraph(text: str) -> str:
     return textwrap.fill(text, width())
 
 
+def indented(text: str) -> str:
+    """A text wrapped to the width, set in by two letters."""
+    return textwrap.fill(text, width(), initial_indent=INDENT, subsequent_indent=INDENT)
+
+
 def bullets(lines: Sequence[str]) -> str:
     """Texts as a list, each wrapped to the width."""
     return "\n".join(textwrap.fill(line, width(), initial_indent="  - ", subsequent_indent="    ") for line in lines)
