@@ -5,6 +5,8 @@ import subprocess
 import sys
 from pathlib import Path
 
+import pytest
+
 ROOT = Path(__file__).parents[2]
 README = (ROOT / "README.md").read_text(encoding="utf-8")
 
@@ -23,13 +25,29 @@ def test_the_quoted_answer_is_the_answer_of_the_example(tmp_path):
     assert {path.name for path in (tmp_path / "results/billet_forging").iterdir()} == listed | {"case.toml"}
 
 
+COMMANDS = re.findall(r"^\| `thermal (.*?)` \|", README, flags=re.MULTILINE)
+LONG = {"verify my.toml"}
+
+
 def test_the_commands_of_the_table_work(tmp_path):
-    commands = re.findall(r"^\| `thermal (.*?)` \|", README, flags=re.MULTILINE)
-    assert len(commands) == 4
-    for command in commands:
-        done = thermal(*command.split(), folder=tmp_path)
-        assert done.returncode == 0, f"{command}: {done.stderr}"
-        assert done.stderr == ""
+    assert len(COMMANDS) == 8
+    for command in COMMANDS:
+        if command not in LONG:
+            works(command, tmp_path)
+
+
+@pytest.mark.slow
+def test_the_long_commands_of_the_table_work(tmp_path):
+    works("new billet my.toml", tmp_path)
+    for command in LONG:
+        assert command in COMMANDS
+        works(command, tmp_path)
+
+
+def works(command, folder):
+    done = thermal(*command.split(), folder=folder)
+    assert done.returncode == 0, f"{command}: {done.stderr}"
+    assert done.stderr == ""
 
 
 def test_the_python_lines_work(monkeypatch):

@@ -276,3 +276,22 @@ def test_a_material_called_like_a_result_gets_another_name(tmp_path):
     setup = build(case)
     write_results(tmp_path / "x", setup, case, run(setup))
     assert load_case(tmp_path / "x" / "case.toml").workpiece.material == "material-case.toml"
+
+
+def test_lining_and_gas_of_ones_own_are_kept_with_the_case(tmp_path):
+    data = Path(materials.__file__).parent / "data"
+    for kind, source in (("lining", "lining/castable-alumina.toml"), ("gas", "gas/argon.toml")):
+        text = (data / source).read_text(encoding="utf-8")
+        key = Path(source).stem
+        (tmp_path / f"{kind}.toml").write_text(text.replace(f'key = "{key}"', f'key = "my-{kind}"'), encoding="utf-8")
+    own = {"lining": '{ material = "lining.toml", thickness = "5 mm" }', "surroundings.gas": "gas.toml"}
+    short = {"schedule": '[{ stage = "heat", drive = { supply_power = "10 kW" }, duration = "1 s" }]'}
+    case = from_text(starter("billet"), tmp_path, {**own, **short})
+    setup = build(case)
+    history = run(setup)
+    write_results(tmp_path / "x", setup, case, history)
+    assert {"lining.toml", "gas.toml"} <= {path.name for path in (tmp_path / "x").iterdir()}
+    for name in ("lining.toml", "gas.toml"):
+        (tmp_path / name).unlink()
+    again = load_case(tmp_path / "x" / "case.toml")
+    assert run(build(again)).readings["surface"][-1] == history.readings["surface"][-1]
