@@ -29,6 +29,7 @@ from thermal.geometry.sampling import Sampler
 from thermal.geometry.shapes import cut, cylinder, plate
 from thermal.interfaces import Array, Demand, PropertyOf, Supply
 from thermal.losses import losses_of
+from thermal.remarks import coil_remarks, material_remarks
 from thermal.schedule import Stage, Stop
 from thermal.setup import Setup
 
@@ -61,14 +62,14 @@ def build(case: Case) -> Setup:
     frequency = frequency_of(case)
     coil = coil_of(case, frequency)
     assumptions = [*case.defaults_used, *_model_choices(case, material, coil)]
-    notes: list[str] = []
+    notes = material_remarks(case, material, frequency)
 
     covered = _covered(case, coil)
     row = coil is not None and case.workpiece.neighbours == "touching"
     filled = coil.length if coil is not None and row else covered
     supply = _supply(case, frequency, coil, assumptions, notes)
     if coil is not None:
-        notes += _remarks(case, coil, material)
+        notes += coil_remarks(case, coil, _covered(case, coil), material)
 
     def source_on(mesh: Mesh) -> SectionSource:
         path = None if coil is None else _path(case, coil, mesh, frequency, filled)
@@ -172,31 +173,6 @@ def _model_choices(case: Case, material: Material, coil: Coil | None) -> list[st
         if isinstance(stage, Hold) and _direct(case, index) is not None:
             choices.append(f"schedule.{index} (hold): at most what the heating before it used (assumption)")
     return choices
-
-
-def _remarks(case: Case, coil: Coil, material: Material) -> list[str]:
-    """What the reader must know about how well the coil model fits this piece."""
-    piece, remarks = case.workpiece, []
-    diameter = max(coil.opening)
-    covered = _covered(case, coil)
-    if piece.length > coil.length:
-        remarks.append(
-            f"The piece ({1e3 * piece.length:.4g} mm) is longer than the coil: only the {1e3 * covered:.4g} mm inside "
-            "the coil are computed, as if no heat flowed along the length. Time, temperature and energy per tonne are "
-            "those of that part."
-        )
-    if coil.length < diameter:
-        remarks.append("The coil is shorter than its bore is wide: expect errors of 10 to 20 % in power (estimate).")
-    alone = piece.neighbours == "none"
-    if alone and covered < 0.8 * coil.length:
-        worst = 20 if not material.magnetics.linear else 10
-        remarks.append(
-            f"The piece fills only {100 * covered / coil.length:.0f} % of the coil: power may be off by up to "
-            f"{worst} % (estimate)."
-        )
-    if alone and piece.length < piece.outline[0]:
-        remarks.append("The piece is shorter than it is wide: its ends count, which one dimension does not see.")
-    return remarks
 
 
 def _mesh(case: Case, depth: float, refinement: int, length: float) -> Mesh:

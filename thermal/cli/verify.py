@@ -6,7 +6,9 @@ from typing import Annotated
 
 import typer
 
+from thermal.cli.changes import Changes, overrides
 from thermal.cli.exits import NO_RESULT, exit_codes, say
+from thermal.cli.material import Folder
 
 
 def verify(
@@ -15,6 +17,8 @@ def verify(
     ] = None,
     full: Annotated[bool, typer.Option("--full", help="More sizes, times and frequencies.")] = False,
     as_json: Annotated[bool, typer.Option("--json", help="Print JSON.")] = False,
+    changes: Changes = None,
+    materials: Folder = None,
 ) -> None:
     """Check the program here and now against closed solutions and measurements.
 
@@ -22,7 +26,7 @@ def verify(
     """
     with exit_codes():
         if case is not None:
-            _second_engine(case, full or as_json)
+            _second_engine(case, full or as_json, changes, materials)
             return
 
         import json
@@ -42,7 +46,7 @@ def verify(
             raise typer.Exit(NO_RESULT)
 
 
-def _second_engine(path: Path, table_options: bool) -> None:
+def _second_engine(path: Path, table_options: bool, changes: list[str] | None, materials: Path | None) -> None:
     from thermal.errors import CaseError
 
     if table_options:
@@ -53,7 +57,7 @@ def _second_engine(path: Path, table_options: bool) -> None:
     from thermal.report.second_engine import second_engine_text
 
     try:
-        result = compare(load_case(path), _progress)
+        result = compare(load_case(path, overrides(changes), materials=materials), _progress)
     finally:
         _progress("")
     say(second_engine_text(result))

@@ -5,6 +5,8 @@ from typing import NamedTuple
 from thermal.case import Case
 from thermal.constants import ZERO_CELSIUS
 from thermal.control import HoldTemperature
+from thermal.errors import NoConvergence
+from thermal.report.conditions import conditions, thin_notes
 from thermal.results.history import History
 from thermal.results.stages import stage_ends, time_above
 from thermal.results.verdict import celsius, seconds
@@ -77,6 +79,12 @@ SUFFOCATION = Caution(
     "Shielding gas: nitrogen, argon and helium displace the air and suffocate without warning, in pits, hoods and "
     "closed rooms first: ventilate, measure oxygen, as local rules ask.",
 )
+TITANIUM = Caution(
+    "Titanium: above about 700 °C it takes up oxygen and nitrogen; chips and fines burn, no water.",
+    "Titanium: above about 700 °C it takes up oxygen and nitrogen and turns brittle at the skin (from memory); hot "
+    "nitrogen does not protect it. Chips, dust and fines burn fiercely and water feeds the fire; keep them away and "
+    "have the extinguisher your local rules ask for.",
+)
 HOLDING = Caution(
     "Holding: a control that reads wrong heats on: have an independent over-temperature cut-out.",
     "Holding: a control that reads the wrong temperature heats on without end; have an independent over-temperature "
@@ -87,8 +95,8 @@ HOLDING = Caution(
 def expectation(case: Case) -> tuple[str, ...]:
     """How far the answer can be trusted without a measurement to adjust it."""
     told = [
-        "Not calibrated: power within about ±10 %, temperature within about ±30 to 50 K (common practice); "
-        "a measured heating and cooling curve of your own piece narrows this."
+        "Not calibrated: power within about ±10 %, temperature within about ±30 to 50 K (common practice), where no "
+        "note says more; a measured heating and cooling curve of your own piece narrows this."
     ]
     if case.workpiece.neighbours == "none":
         told.append("Heat flows through the section only: the answer is an average over the length of the piece.")
@@ -104,6 +112,7 @@ def remarks(setup: Setup, case: Case, history: History) -> tuple[str, ...]:
     """Notes of the setup, data held beyond their range, holds that were not kept and moments not covered."""
     return (
         *setup.notes,
+        *_thin(setup, case),
         *_beyond_data(setup, case, history),
         *_not_held(setup, history),
         *(
@@ -112,6 +121,14 @@ def remarks(setup: Setup, case: Case, history: History) -> tuple[str, ...]:
             if time > history.time[-1]
         ),
     )
+
+
+def _thin(setup: Setup, case: Case) -> list[str]:
+    try:
+        return thin_notes(case, conditions(setup))
+    except NoConvergence:
+        # Of one uniform temperature that the run itself never met.
+        return []
 
 
 def _beyond_data(setup: Setup, case: Case, history: History) -> list[str]:
@@ -163,6 +180,8 @@ def cautions(setup: Setup, hottest: float) -> tuple[Caution, ...]:
         told += [COIL_FIELD, VOLTAGE, COOLING_WATER]
     if hottest > FUMES:
         told.append(SMOKE)
+    if setup.material.group == "titanium" and hottest > FUMES:
+        told.append(TITANIUM)
     if setup.gas != "air":
         told.append(SUFFOCATION)
     if powered and setup.material.curie_temperature is None:

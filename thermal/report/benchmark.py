@@ -1,6 +1,7 @@
 """The benchmark as text and JSON."""
 
 from importlib.metadata import version
+from importlib.util import find_spec
 from typing import Any
 
 from thermal.crosscheck.bench import COMPARABLE, OWN, PROBLEMS, TIGHT, Benchmark, Measured, comparison
@@ -92,7 +93,7 @@ def benchmark_json(found: Benchmark, absent_case: str | None) -> dict[str, Any]:
 
 def library_versions(missing: tuple[str, ...]) -> dict[str, str]:
     """Versions of everything that takes part."""
-    return versions() | {name: version(name) for name in OPTIONAL if name not in missing}
+    return versions() | {name: version(name) for name in OPTIONAL if name not in missing and find_spec(OPTIONAL[name])}
 
 
 def _entry(row: Measured, rows: tuple[Measured, ...]) -> dict[str, Any]:

@@ -12,7 +12,7 @@ from thermal.report.versions import versions
 from thermal.results.balance import relative_residual
 from thermal.results.history import History
 from thermal.results.stages import StageEnd, limit_spans, stage_ends
-from thermal.results.verdict import depth_of_maximum, sentence, specific_energy
+from thermal.results.verdict import depth_of_maximum, margin_to_solidus, sentence, specific_energy
 from thermal.setup import Setup
 
 
@@ -28,6 +28,7 @@ def summary(setup: Setup, case: Case, history: History) -> dict[str, Any]:
         "maximum_C": _number(history.readings["maximum"][hottest] - ZERO_CELSIUS),
         "maximum_depth_mm": _number(depth_of_maximum(history, hottest) * 1e3),
         "maximum_time_s": _number(history.time[hottest]),
+        "margin_to_solidus_K": margin_to_solidus(setup, history),
         "specific_energy_kWh_per_t": _number(energy / 3600.0),
         "specific_energy_from": account,
         "peaks": _peaks(history),

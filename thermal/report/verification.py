@@ -132,5 +132,9 @@ def _hint(result: Verification) -> str:
 
 def _count(result: Verification) -> str:
     total, failed = len(result.rows), len(result.failed)
+    measured = sum(row.check.group == "measured" for row in result.rows)
+    formulas = sum("no grid" in row.check.grid for row in result.rows)
+    solved = total - measured - formulas
+    kinds = f"{solved} solved on a grid, {formulas} formulas evaluated, {measured} against measurements"
     verdict = f"All {total} rows agree" if not failed else f"{failed} of {total} rows FAIL"
-    return f"{verdict}; {result.wall_s:.1f} s."
+    return paragraph(f"{verdict} ({kinds}); {result.wall_s:.1f} s.")

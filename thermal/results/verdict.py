@@ -16,6 +16,8 @@ LIMIT_WORDS = {
 
 SPANS_AT_MOST = 2
 AS_HOT = 0.5
+NEAR_SOLIDUS = 50.0
+"""Below this distance [K] of the hottest point to the solidus an uncalibrated result cannot tell good from burnt."""
 HOLDS_WITHIN = 2e-3
 """A target counts as met within this many kelvin: twice what a run lands within."""
 
@@ -32,7 +34,7 @@ def sentence(setup: Setup, history: History) -> str:
         )
     passed = _solidus_passed(setup, history)
     late = {} if passed is None else _met_after(setup, ends, passed)
-    if (warning := _melting(setup, passed, late, ends[-1])) is not None:
+    if (warning := _melting(setup, history, passed, late, ends[-1])) is not None:
         first.append(warning)
     in_time = [end for end in ends if end.number not in late]
     outcomes = [text for end in in_time if (text := _outcome(setup, history, end)) is not None]
@@ -58,7 +60,7 @@ def energy_words(setup: Setup, history: History) -> str | None:
         return None
     per_tonne = f"{energy / 3600.0:.0f} kWh/t"
     if account == "supply":
-        return f"{per_tonne} from the supply"
+        return f"{per_tonne} at the supply output"
     return f"{per_tonne} absorbed (without a coil there is no figure at the supply)"
 
 
@@ -138,7 +140,13 @@ def _met_after(setup: Setup, ends: tuple[StageEnd, ...], passed: float) -> dict[
     return found
 
 
-def _melting(setup: Setup, passed: float | None, late: dict[int, str], last: StageEnd) -> str | None:
+def margin_to_solidus(setup: Setup, history: History) -> float | None:
+    """How far the hottest point stays below the solidus [K], below zero where it passes it; None without a solidus."""
+    solidus = setup.material.solidus
+    return None if solidus is None else solidus - float(history.readings["maximum"].max())
+
+
+def _melting(setup: Setup, history: History, passed: float | None, late: dict[int, str], last: StageEnd) -> str | None:
     """Sentence about the solidus, with the targets that were met too late, or the end of the run at the liquidus."""
     solidus = setup.material.solidus
     told = []
@@ -147,6 +155,12 @@ def _melting(setup: Setup, passed: float | None, late: dict[int, str], last: Sta
         told.append(
             f"The hottest point passes the solidus {celsius(solidus)} at {seconds(passed)}{before}: "
             "the piece burns or melts there"
+        )
+    margin = margin_to_solidus(setup, history)
+    if margin is not None and solidus is not None and 0.0 <= margin < NEAR_SOLIDUS:
+        told.append(
+            f"The hottest point comes within {margin:.0f} K of the solidus {celsius(solidus)}, which is less than the "
+            "error of this calculation: take it as burnt or melting"
         )
     if last.record.reason == "too hot":
         bound = "liquidus" if setup.material.liquidus is not None else "end of the material data"

@@ -19,14 +19,14 @@ def test_target_met_names_time_hottest_point_and_energy(run_of):
     text = told(run, status="target")
     end = run[2].stages[0].end
     assert text.startswith(f"Reaches 900 °C in the core after {end:.1f} s; hottest point ")
-    assert re.search(r"; \d+ kWh/t from the supply\.$", text)
+    assert re.search(r"; \d+ kWh/t at the supply output\.$", text)
     assert "limit" not in text
 
 
 def test_energy_per_tonne_is_that_of_the_supply_account(run_of):
     setup, _, history = run_of("tube")
     per_tonne = history.energy["supply"][-1] / 3.6e6 / (setup.mass / 1000.0)
-    assert f"{per_tonne:.0f} kWh/t from the supply" in sentence(setup, history)
+    assert f"{per_tonne:.0f} kWh/t at the supply output" in sentence(setup, history)
 
 
 def test_without_a_coil_the_energy_is_the_absorbed_one_and_says_so(run_of):
