@@ -157,11 +157,11 @@ def _molar_heats(book: Book, material: Material) -> None:
     at_20 = float(material.specific_heat(T_REFERENCE)) / three_R
     caloric = material.caloric
     end = caloric.T_max if material.solidus is None else min(caloric.T_max, material.solidus - 1.0)
-    mean = float(caloric.enthalpy(end)) / (end - T_REFERENCE) / three_R
-    for check, found, (low, high) in (
-        ("Dulong-Petit", at_20, MOLAR_HEAT_20),
-        ("mean molar heat", mean, MOLAR_HEAT_MEAN),
-    ):
+    checks = [("Dulong-Petit", at_20, MOLAR_HEAT_20)]
+    if end > T_REFERENCE:
+        mean = float(caloric.enthalpy(end)) / (end - T_REFERENCE) / three_R
+        checks.append(("mean molar heat", mean, MOLAR_HEAT_MEAN))
+    for check, found, (low, high) in checks:
         where = "at 20 °C" if check == "Dulong-Petit" else f"from 20 °C to {celsius(end)}"
         odd = not low <= found <= high
         wrong = not MOLAR_HEAT_POSSIBLE[0] <= found <= MOLAR_HEAT_POSSIBLE[1]

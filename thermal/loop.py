@@ -25,6 +25,10 @@ SETTLED = 1e-3
 LATELY = (3, 10)
 """Steps looked back on to tell whether a stage has settled."""
 
+AT_ONCE = 1e-6
+"""A stop passed within so short a step [s] is taken as met by it: a surface that begins to lose heat at once reads some
+kelvin lower after any step, however short."""
+
 HOPELESS = 1e3
 """A target so many times farther off than the stage has taken is out of reach."""
 
@@ -76,10 +80,11 @@ def _march_stage(setup: Setup, number: int, stage: Stage, book: "_Book") -> Iter
         landed = far <= 0.0
         if landed:
             found = stepper.land(now, length, far, distance)
-            if found is None:
+            if found is not None:
+                taken, end, length = found
+            elif length > AT_ONCE:
                 step = 0.3 * length
                 continue
-            taken, end, length = found
         timed_out = not landed and length >= left
         book.accept(taken.gained, end, end_time if timed_out else book.clock + length)
         watch.see(book.clock - length, book.clock, end.point.limit)

@@ -22,6 +22,8 @@ SHRINK_AT_MOST = 0.2
 SAFETY = 0.85
 STEP_AT_LEAST = 1e-9
 LANDINGS_AT_MOST = 30
+HOLDING_AT_MOST = 1.0
+"""Largest tolerance of a step under a controller [K]: coarser, one that is quick and often off books too much energy."""
 NEARLY_ON = 1.0
 """A controller counts as about to ask for power within this many kelvin."""
 LANDING = 1e-3
@@ -108,6 +110,9 @@ class Stepper:
             setup.frequency, nothing, nothing, nothing, nothing, 0.0, math.nan, None, None
         )
         self.field_solves = 0
+        self._tolerance = setup.tolerance
+        if stage.control.gain[1] > 0.0:
+            self._tolerance = min(setup.tolerance, HOLDING_AT_MOST)
 
     def moment(
         self, H: Array, memory: Array, guess: tuple[OperatingPoint, EddyField] | None, trend: Array | None = None
@@ -291,7 +296,7 @@ class Stepper:
     def error_of(self, taken: Step, start: Moment, end: Moment) -> float:
         """Largest embedded error of a step [K] over the tolerance."""
         slope = np.maximum(start.matrix.dT_dH, end.matrix.dT_dH)
-        return float((np.abs(taken.error) * slope).max()) / self.setup.tolerance
+        return float((np.abs(taken.error) * slope).max()) / self._tolerance
 
     def advance(self, start: Moment, step: float, most: float) -> tuple[Step, Moment, float, float, int]:
         """The next accepted step.

@@ -106,8 +106,14 @@ def test_a_flow_too_slow_or_too_fast_for_its_correlation_is_refused_before_a_run
     for speed in (1e-4, 2e4):
         with pytest.raises(OutOfRange, match="forced flow across a cylinder"):
             cylinder_convection("convection", air, 293.15, 0.02, 0.2, "horizontal", speed)
-        with pytest.raises(OutOfRange, match="forced flow along a plate"):
-            plate_convection("convection", air, 293.15, 0.02, speed)
+    with pytest.raises(OutOfRange, match="forced flow along a plate"):
+        plate_convection("convection", air, 293.15, 0.02, 2e4)
+
+
+def test_a_slow_flow_along_the_ends_is_held_at_the_lowest_reynolds_number(air):
+    # An upper estimate: a slow draught does not end a run that still gas would not.
+    h = [plate_convection("c", air, 293.15, 0.01, speed).flux(600.0, 600.0)[0] for speed in (1e-4, 1e-3, 0.02, 1.0)]
+    assert h[0] == h[1] == h[2] < h[3]
 
 
 def test_free_and_forced_convection_blend_without_a_step(air):

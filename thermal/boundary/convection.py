@@ -16,6 +16,7 @@ from materials.gas import Gas
 from thermal.boundary.correlations import (
     CYLINDER_RAYLEIGH,
     PLATE_RAYLEIGH,
+    PLATE_REYNOLDS,
     cylinder_in_cross_flow,
     horizontal_cylinder,
     plate_in_parallel_flow,
@@ -98,7 +99,7 @@ def plate_convection(name: str, gas: Gas, T_surroundings: float, height: float, 
     where one face looks up and one down. Errors: OutOfRange as for ``cylinder_convection``.
     """
     free = free_coefficient(gas, T_surroundings, height, vertical_plate, PLATE_RAYLEIGH)
-    forced = forced_coefficient(gas, T_surroundings, height, speed, plate_in_parallel_flow)
+    forced = forced_coefficient(gas, T_surroundings, height, speed, plate_in_parallel_flow, PLATE_REYNOLDS[0])
     return _tabulated(name, gas, T_surroundings, free, forced, speed)
 
 
@@ -120,13 +121,18 @@ def free_coefficient(
     return h
 
 
-def forced_coefficient(gas: Gas, T_surroundings: float, size: float, speed: float, nusselt: Nusselt) -> Coefficient:
-    """Forced convection h(T_surface) straight from a correlation in (Re, Pr), size [m] its length."""
+def forced_coefficient(
+    gas: Gas, T_surroundings: float, size: float, speed: float, nusselt: Nusselt, lowest_Re: float = 0.0
+) -> Coefficient:
+    """Forced convection h(T_surface) straight from a correlation in (Re, Pr), size [m] its length.
+
+    Below the lowest Re of the correlation its Nusselt number is held, an upper estimate beside free convection.
+    """
 
     def h(T: Array) -> Array:
         film = (T + T_surroundings) / 2
         Re = speed * size / gas.kinematic_viscosity(film)
-        return nusselt(Re, gas.prandtl(film)) * gas.conductivity(film) / size
+        return nusselt(np.maximum(Re, lowest_Re), gas.prandtl(film)) * gas.conductivity(film) / size
 
     return h
 

@@ -11,6 +11,7 @@ from thermal.interfaces import Array
 
 CYLINDER_RAYLEIGH = (1e-5, 1e12)
 PLATE_RAYLEIGH = (1e-1, 1e12)
+PLATE_REYNOLDS = (10.0, 1e7)
 MOST_CURVED = 5.0
 
 
@@ -72,7 +73,7 @@ def plate_in_parallel_flow(Re: Array, Pr: Array) -> Array:
     Source: Gnielinski 1975, Forsch. Ingenieurwes. 41:145-153; VDI Heat Atlas, 2nd ed. 2010, part G4.
     """
     what = "forced flow along a plate"
-    _within(what, "the Reynolds number", Re, 10.0, 1e7)
+    _within(what, "the Reynolds number", Re, *PLATE_REYNOLDS)
     _within(what, "the Prandtl number", Pr, 0.6, 2000.0)
     laminar = 0.664 * Re**0.5 * Pr ** (1 / 3)
     turbulent = 0.037 * Re**0.8 * Pr / (1 + 2.443 * Re**-0.1 * (Pr ** (2 / 3) - 1))

@@ -33,6 +33,8 @@ ALLOWED, ALLOWED_SHARE = 2.0, 2e-3
 """Largest difference that counts as agreement: in kelvin, and with it a share of the rise of temperature."""
 TELL_EVERY = 20
 """Steps between two lines of progress."""
+SAME_LOSS = 0.02
+"""The heat lost in all may differ by this share."""
 FIRST_ORDER = (1.7, 2.3)
 """Fall of the raw difference at half the step, where the error is of first order in it."""
 
@@ -81,7 +83,7 @@ class SecondEngine:
     temperature of the run [K] ; largest : per reading ; ends : per stage ; passes : at a step size and at half of it ;
     ratio : raw difference of the first over that of the second ; first_order : it is about 2, as where the step size
     rules it ; lost : [J] by the tool and by the second engine, extrapolated ; allowed : [K] ; agrees : every largest
-    difference is within that.
+    difference is within that, and the heat lost is the same within 2 %.
     """
 
     title: str
@@ -154,6 +156,7 @@ def compare_run(
         at_end = dict(zip(READINGS, difference[last].tolist(), strict=True))
         ends.append(AtEnd(names[number], float(history.time[rows[last]]), at_end))
     lost = float(sum(account[-1] for name, account in history.energy.items() if name.startswith("loss: ")))
+    other = 2.0 * fine.bar.lost - coarse.bar.lost
     allowed = ALLOWED + ALLOWED_SHARE * max(rise, 0.0)
     ratio = raw[0] / raw[1] if raw[1] > 0.0 else float("nan")
     return SecondEngine(
@@ -166,9 +169,10 @@ def compare_run(
         passes=(coarse.told(raw[0]), fine.told(raw[1])),
         ratio=ratio,
         first_order=FIRST_ORDER[0] <= ratio <= FIRST_ORDER[1],
-        lost=(lost, 2.0 * fine.bar.lost - coarse.bar.lost),
+        lost=(lost, other),
         allowed=allowed,
-        agrees=all(abs(each.difference) <= allowed for each in largest),
+        agrees=all(abs(each.difference) <= allowed for each in largest)
+        and abs(other - lost) <= SAME_LOSS * max(abs(lost), abs(other)),
     )
 
 

@@ -172,3 +172,8 @@ def test_json_holds_every_row(quick):
     first, row = told["rows"][0], quick.rows[0]
     assert (first["id"], first["error"], first["error_is"]) == (row.check.id, row.error, "relative")
     assert first["function"] == "thermal.eddy.exact.skin_depth"
+
+
+def test_no_two_rows_go_by_the_same_name():
+    names = [(row.check.id, row.quantity) for row in verify(full=True).rows]
+    assert len(names) == len(set(names))

@@ -8,7 +8,7 @@ from thermal.crosscheck.checks.field import uniform
 from thermal.crosscheck.checks.row import PUBLISHED_MU_0, Check, Row
 from thermal.eddy.finite_coil import FluxPath
 from thermal.geometry.grading import graded_edges
-from thermal.geometry.inductance import current_sheet_inductance, nagaoka
+from thermal.geometry.inductance import nagaoka
 from thermal.geometry.shapes import cylinder
 
 CLOSED = "closed form, no grid"
@@ -27,7 +27,7 @@ SIMPLE = Check(
     "CL-02",
     "coil",
     "Shop formula a2 N2/(9a + 10l), in inches and microhenry, over the inductance of a run",
-    "thermal.geometry.inductance.current_sheet_inductance",
+    FLUX_PATH,
     CLOSED,
     "H. A. Wheeler, Proc. IRE 16 (1928) 1398 (from memory); both evaluated",
 )
@@ -35,7 +35,7 @@ WORKED = Check(
     "CL-03",
     "coil",
     "Inductance of air coils, width by length; of one turn where no number is given",
-    "thermal.geometry.inductance.current_sheet_inductance",
+    FLUX_PATH,
     CLOSED,
     "T. R. Lyle, Phil. Trans. 213A (1914) 421 as quoted in a public test set (where as printed), else Lorenz's form "
     "evaluated",
@@ -150,7 +150,7 @@ def rows(full: bool) -> Iterator[Row]:
     for ratio in WHEELER if full else (1.0,):
         yield SIMPLE.relative(f"diameter / length {ratio:g}", WHEELER[ratio], _wheeler_over_tool(ratio), "-", 1e-8)
     for name, turns, diameter, length, L, allowed in SOLENOIDS if full else SOLENOIDS[:QUICK_SOLENOIDS]:
-        got = 1e6 * current_sheet_inductance(turns, diameter, length)
+        got = 1e6 * _air_coil(turns, diameter, length)
         yield WORKED.relative(name, L, got, "µH", allowed)
     for name, radius, length, turns, fill, frequency, R in SHEETS if full else SHEETS[:1]:
         depth = copper_depth(1.8e-8, frequency)
@@ -163,7 +163,14 @@ def _wheeler_over_tool(ratio: float) -> float:
     turns, diameter, inch = 12.0, 0.08, 0.0254
     a, length = diameter / 2.0 / inch, diameter / ratio / inch
     wheeler = 1e-6 * a**2 * turns**2 / (9.0 * a + 10.0 * length)
-    return wheeler / current_sheet_inductance(turns, diameter, diameter / ratio)
+    return wheeler / _air_coil(turns, diameter, diameter / ratio)
+
+
+def _air_coil(turns: float, diameter: float, length: float) -> float:
+    """Inductance [H] a run gives a coil without a workpiece, its current on the bore."""
+    bore = math.pi * diameter**2 / 4.0
+    path = FluxPath(turns, length, bore, nagaoka(diameter / length), 0.0, 0.0, 0.0)
+    return path.coil_impedance(0j, 1.0).imag / (2.0 * math.pi)
 
 
 def _around(full: bool) -> Iterator[Row]:
@@ -172,7 +179,7 @@ def _around(full: bool) -> Iterator[Row]:
     path = FluxPath(turns, length, math.pi * bore**2, 1.0, length, math.pi * a**2, 2.0 * math.pi * a)
     for name, (rho, mu_r, frequency), Z_s, (R, X, X_gap, R_copper), share in BARS if full else BARS[:QUICK_BARS]:
         Z = 1e3 * path.coil_impedance(Z_s, frequency) / length
-        yield AROUND.relative(f"{name}: reactance", X + X_gap, Z.imag, "mohm/m", 1e-8)
+        yield AROUND.relative(f"{name}: X", X + X_gap, Z.imag, "mohm/m", 1e-8)
         mesh = cylinder(graded_edges(0.0, a, math.sqrt(rho / (math.pi * frequency * PUBLISHED_MU_0 * mu_r))), length)
         solved = 1e3 * path.coil_impedance(uniform(mesh, rho, mu_r, frequency).impedance, frequency) / length
         yield AROUND_SOLVED.relative(f"{name}: resistance", R, solved.real, "mohm/m", 5e-4)

@@ -272,7 +272,7 @@ def _freezing(full: bool) -> Iterator[Row]:
         coarse = np.geomspace(0.25e-3, 15e-3, 33)
         sizes = np.concatenate([fine, coarse * (0.135 / coarse.sum())])
         depth, _ = _frozen(plate(np.concatenate([[0.0], np.cumsum(sizes[::-1])]), 0.2, 0.3), 50.0, 90.0)
-        yield FREEZING_HOTTER.relative("front under the wall", 17.567976610195107, depth, "mm", 5e-3)
+        yield FREEZING_HOTTER.relative("front under the wall, from hotter", 17.567976610195107, depth, "mm", 5e-3)
 
 
 def _frozen(mesh: Mesh, superheat: float, liquid: float) -> tuple[float, float]:
