@@ -73,7 +73,7 @@ def test_whatever_the_system_says_before_the_run_is_one_sentence(case, monkeypat
 
 
 @pytest.mark.parametrize(
-    "name", ["_with_materials_beside", "summary_text", "curves_csv", "save_curves", "_put_in_place"]
+    "name", ["with_materials_beside", "summary_text", "curves_csv", "save_curves", "_put_in_place"]
 )
 def test_a_disk_that_gets_full_at_any_part_of_the_writing(case, monkeypatch, name):
     def full(*_):

@@ -8,7 +8,9 @@ from thermal.cli import material
 from thermal.cli.bench import bench
 from thermal.cli.check import check
 from thermal.cli.new import new
+from thermal.cli.question import compare, frequency, peak, time
 from thermal.cli.run import run
+from thermal.cli.sweep import sweep
 from thermal.cli.verify import verify
 
 app = typer.Typer(
@@ -40,6 +42,11 @@ def options(
 app.command()(new)
 app.command()(check)
 app.command()(run)
+app.command()(time)
+app.command()(peak)
+app.command()(compare)
+app.command()(frequency)
+app.command()(sweep)
 app.command()(verify)
 app.command()(bench)
 app.add_typer(material.app, name="material")

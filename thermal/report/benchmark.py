@@ -4,8 +4,17 @@ from importlib.metadata import version
 from importlib.util import find_spec
 from typing import Any
 
-from thermal.crosscheck.bench import COMPARABLE, OWN, PROBLEMS, TIGHT, Benchmark, Measured, comparison
+from thermal.crosscheck.bench import OWN, PROBLEMS, TIGHT, Benchmark, Measured, comparison
 from thermal.crosscheck.rivals import OPTIONAL
+from thermal.crosscheck.timing import COMPARABLE
+from thermal.report.benchmark_extras import (
+    about_sweep,
+    question_lines,
+    questions_json,
+    start_lines,
+    sweep_json,
+    sweep_table,
+)
 from thermal.report.text import bullets, columns, paragraph
 from thermal.report.versions import versions
 
@@ -33,10 +42,12 @@ def benchmark_text(found: Benchmark, absent_case: str | None) -> str:
         rows = [row for row in found.rows if row.problem == each.name]
         table = columns([HEAD, *(_cells(row, found.rows) for row in rows)])
         parts.append(f"{each.name}\n{table}")
+    parts.append(sweep_table(found.sweep))
     cold = found.cold
     lines = [
+        *start_lines(found.sweep),
         f"Cold start: a fresh interpreter prints a result of P1 after {_ms(cold.p1.seconds)} ms (wall clock), "
-        f"{cold.ratio:.1f} times as long as one that only imports NumPy."
+        f"{cold.ratio:.1f} times as long as one that only imports NumPy.",
     ]
     if found.case is not None:
         case = found.case
@@ -44,12 +55,13 @@ def benchmark_text(found: Benchmark, absent_case: str | None) -> str:
             f"{case.name}: {_ms(case.timing.seconds)} ms, {case.steps} steps, {case.evaluations} field solves; "
             f"{case.times_p1:.1f} times as long as P1 at 0.1 K."
         )
+    lines += question_lines(found.questions)
     if absent_case is not None:
         lines.append(NO_CASE.format(path=absent_case))
     if found.missing:
         lines.append(missing_text(found.missing))
     parts.append(bullets(lines))
-    parts.append("\n".join(paragraph(text) for text in ABOUT))
+    parts.append("\n".join(paragraph(text) for text in (*ABOUT, about_sweep(found.sweep))))
     return "\n\n".join(parts) + "\n"
 
 
@@ -80,6 +92,8 @@ def benchmark_json(found: Benchmark, absent_case: str | None) -> dict[str, Any]:
             "field_solves": case.evaluations,
             "times_P1_at_0.1_K": case.times_p1,
         },
+        "sweep": sweep_json(found.sweep),
+        "questions": questions_json(found.questions),
         "cold_start": {
             "P1_s": found.cold.p1.seconds,
             "import_numpy_s": found.cold.numpy.seconds,

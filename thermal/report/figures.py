@@ -29,11 +29,11 @@ from thermal.report.style import (
     styled,
 )
 from thermal.report.versions import own_version
-from thermal.report.words import piece_in_words, power_unit
+from thermal.report.words import piece_in_words
 from thermal.results.dense import Sampled, sample
 from thermal.results.history import History
 from thermal.results.stages import limit_spans, off_spans, stage_ends
-from thermal.results.verdict import sentence
+from thermal.results.verdict import power_unit, sentence
 from thermal.setup import Setup
 
 if TYPE_CHECKING:

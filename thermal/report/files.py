@@ -1,9 +1,10 @@
-"""The files of a run, written all at once or not at all."""
+"""Folders of results, written all at once or not at all."""
 
 import os
 import re
 import secrets
 import shutil
+from collections.abc import Callable, Collection
 from dataclasses import replace
 from pathlib import Path
 
@@ -28,10 +29,10 @@ class OutputError(ThermalError):
     """The results cannot go where they were sent."""
 
 
-def demand_place(folder: Path, force: bool) -> None:
+def demand_place(folder: Path, force: bool, names: Collection[str] = FILES) -> None:
     """Refuse a folder that results cannot be written to, before time is spent on a run.
 
-    What a killed run has left beside the folder is cleared away first.
+    What a killed run has left beside the folder is cleared away first. names : of the files that may be replaced.
 
     Raises
     ------
@@ -40,7 +41,7 @@ def demand_place(folder: Path, force: bool) -> None:
     try:
         place = folder.resolve()
         _clear_leftovers(place)
-        _demand_free(folder, place, force)
+        _demand_free(folder, place, force, names)
         above = next(path for path in place.parents if path.exists())
         trial = above / _fresh_name(place)
         trial.mkdir()
@@ -52,7 +53,17 @@ def demand_place(folder: Path, force: bool) -> None:
 
 
 def write_results(folder: Path, setup: Setup, case: Case, history: History, *, force: bool = False) -> None:
-    """Write all files of a run; what was in the folder stays as it was until the new files are complete.
+    """Write all files of a run, see write_folder.
+
+    Raises
+    ------
+    OutputError : the folder cannot be used, see demand_place, or writing fails.
+    """
+    write_folder(folder, FILES, lambda fresh: _write(fresh, setup, case, history), force=force)
+
+
+def write_folder(folder: Path, names: Collection[str], fill: Callable[[Path], None], *, force: bool = False) -> None:
+    """Write a folder of results; what was in it stays as it was until the new files are complete.
 
     A run killed at any moment leaves the old folder or the new one, and perhaps a hidden folder beside it that the
     next run to the same place clears away. Only where the system cannot swap two folders may the old one be found
@@ -61,20 +72,22 @@ def write_results(folder: Path, setup: Setup, case: Case, history: History, *, f
     Parameters
     ----------
     folder : where to; made with the folders above it.
+    names : of the files it may hold, besides files of the user's own.
+    fill : writes them into a folder that is empty.
     force : replace the results that are there.
 
     Raises
     ------
     OutputError : the folder cannot be used, see demand_place, or writing fails.
     """
-    demand_place(folder, force)
+    demand_place(folder, force, names)
     folder = folder.resolve()
     fresh = folder.with_name(_fresh_name(folder))
     try:
         folder.parent.mkdir(parents=True, exist_ok=True)
         try:
             fresh.mkdir()
-            _write(fresh, setup, case, history)
+            fill(fresh)
             _put_in_place(fresh, folder)
         finally:
             shutil.rmtree(fresh, ignore_errors=True)
@@ -82,15 +95,15 @@ def write_results(folder: Path, setup: Setup, case: Case, history: History, *, f
         raise OutputError(f"{folder}: cannot be written ({error.strerror})") from None
 
 
-def _demand_free(folder: Path, place: Path, force: bool) -> None:
+def _demand_free(folder: Path, place: Path, force: bool, names: Collection[str]) -> None:
     if place.exists() and not place.is_dir():
         raise OutputError(f"{folder}: is a file, results go into a folder")
     found = sorted(path.name for path in place.iterdir()) if place.is_dir() else []
     if found and not force:
         raise OutputError(f"{folder}: is not empty, add --force to replace the results or name another with --out")
-    strange = [name for name in found if name not in FILES and name not in _materials_in(place)]
+    strange = [name for name in found if name not in names and name not in _materials_in(place)]
     if strange:
-        raise OutputError(f"{folder}: holds '{strange[0]}', which is no result of a run; name another with --out")
+        raise OutputError(f"{folder}: holds '{strange[0]}', which is not of those results; name another with --out")
 
 
 def _fresh_name(folder: Path) -> str:
@@ -135,7 +148,7 @@ def _materials_in(folder: Path) -> set[str]:
     return {name for name in named if isinstance(name, str) and name.endswith(".toml")}
 
 
-def _with_materials_beside(folder: Path, case: Case) -> Case:
+def with_materials_beside(folder: Path, case: Case) -> Case:
     """The case with copies of the user's own files in the folder; a path to one becomes its bare name."""
     given = {"workpiece.material": case.workpiece.material, "surroundings.gas": case.surroundings.gas}
     if case.lining is not None:
@@ -153,7 +166,7 @@ def _with_materials_beside(folder: Path, case: Case) -> Case:
 
 
 def _write(folder: Path, setup: Setup, case: Case, history: History) -> None:
-    kept = _with_materials_beside(folder, case)
+    kept = with_materials_beside(folder, case)
     texts = {
         "summary.json": summary_text(setup, case, history),
         "curves.csv": curves_csv(setup, case, history),

@@ -6,8 +6,8 @@ from thermal.case import Case
 from thermal.report.conditions import Condition, conditions, section_of, thin_notes
 from thermal.report.tables import COIL, PIECE
 from thermal.report.text import bullets, columns
-from thermal.report.words import piece_in_words, power_unit
-from thermal.results.verdict import LIMIT_WORDS, celsius
+from thermal.report.words import piece_in_words
+from thermal.results.verdict import LIMIT_WORDS, celsius, power_unit
 from thermal.setup import Setup
 
 

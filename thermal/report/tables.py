@@ -9,11 +9,11 @@ from thermal.case import Case
 from thermal.constants import ZERO_CELSIUS
 from thermal.report.advice import cautions, expectation, remarks
 from thermal.report.text import bullets, columns, paragraph
-from thermal.report.words import power_unit, reading_in_words
+from thermal.report.words import reading_in_words
 from thermal.results.balance import relative_residual
 from thermal.results.history import Array, History
 from thermal.results.stages import limit_spans, stage_ends
-from thermal.results.verdict import LIMIT_WORDS, depth_of_maximum, seconds, sentence, spans_in_words
+from thermal.results.verdict import LIMIT_WORDS, depth_of_maximum, power_unit, seconds, sentence, spans_in_words
 from thermal.setup import Setup
 
 SMALL = 3.6e5

@@ -7,11 +7,6 @@ from thermal.results.verdict import hertz
 from thermal.setup import Setup
 
 
-def power_unit(largest: float) -> tuple[str, float]:
-    """Unit in which powers up to a largest [W] read well, and its size [W]."""
-    return ("W", 1.0) if largest < 1e3 else ("kW", 1e3)
-
-
 def reading_in_words(name: str, setup: Setup) -> str:
     """A reading as a table names it: the core of a tube is the surface of its bore."""
     return "core (the bore)" if name == "core" and "bore" in setup.section.mesh.faces else name

@@ -40,7 +40,7 @@ def sentence(setup: Setup, history: History) -> str:
     outcomes = [text for end in in_time if (text := _outcome(setup, history, end)) is not None]
     if not any(stage.stop for stage in setup.stages) and history.status != "interrupted":
         outcomes.append(f"runs to {seconds(ends[-1].record.end)}: {_surface_and_core(history, ends[-1].last)}")
-    parts = [*outcomes, *_limits(history), hottest_point(history)]
+    parts = [*outcomes, *limits_in_words(history), hottest_point(history)]
     if (energy := energy_words(setup, history)) is not None:
         parts.append(energy)
     told = "; ".join(parts)
@@ -97,8 +97,15 @@ def seconds(time: float) -> str:
 
 
 def power(value: float) -> str:
-    """A power [W] with about two figures behind the unit that fits."""
-    return f"{value / 1e3:.3g} kW" if abs(value) >= 1e3 else f"{value:.3g} W"
+    """A power [W] with three figures behind the unit that fits."""
+    if abs(value) >= 999.5e3:
+        return f"{value / 1e6:.3g} MW"
+    return f"{value / 1e3:.3g} kW" if abs(value) >= 999.5 else f"{value:.3g} W"
+
+
+def power_unit(largest: float) -> tuple[str, float]:
+    """Unit in which powers up to a largest [W] read well, and its size [W]."""
+    return ("W", 1.0) if largest < 1e3 else ("kW", 1e3)
 
 
 def hertz(frequency: float) -> str:
@@ -201,6 +208,11 @@ def _settled(history: History, end: StageEnd, stop: Stop, readings: dict[str, fl
     names, spread = _far(stop, readings)
     goal = " and ".join(_goals(stop, names, spread))
     rest = celsius(readings[names[0]]) if names else f"{abs(readings['spread']):.0f} K"
+    return f"cannot reach {goal}: {settling(history, end, rest)}"
+
+
+def settling(history: History, end: StageEnd, rest: str) -> str:
+    """Where a stage came to rest and what held it there, in words."""
     limit = history.limit[end.last]
     giver = "the drive" if limit is None else f"the {LIMIT_WORDS[limit]}"
     # Over the last step: of a piece that rests on its Curie point, the power at an instant swings with a millikelvin.
@@ -209,9 +221,7 @@ def _settled(history: History, end: StageEnd, stop: Stop, readings: dict[str, fl
     given = float(history.energy["absorbed"][i] - history.energy["absorbed"][i - 1]) / step
     losses = (account for name, account in history.energy.items() if name.startswith("loss: "))
     lost = sum(float(account[i] - account[i - 1]) for account in losses) / step
-    return (
-        f"cannot reach {goal}: it settles at {rest}, where {giver} leaves {power(given)} against {power(lost)} of loss"
-    )
+    return f"it settles at {rest}, where {giver} leaves {power(given)} against {power(lost)} of loss"
 
 
 def _goals(stop: Stop, names: list[str], spread: bool) -> list[str]:
@@ -249,5 +259,6 @@ def _missing(stop: Stop, readings: dict[str, float]) -> str:
     return ", ".join(told)
 
 
-def _limits(history: History) -> list[str]:
+def limits_in_words(history: History) -> list[str]:
+    """Which limit of the supply bound when, in words."""
     return [f"the {LIMIT_WORDS[name]} bound {spans_in_words(spans)}" for name, spans in limit_spans(history).items()]

@@ -206,7 +206,7 @@ def test_a_failure_of_the_last_rename_puts_the_old_results_back(run_of, tmp_path
 
 def test_force_does_not_touch_a_folder_with_other_files(run_of, tmp_path):
     (tmp_path / "thesis.txt").write_text("years of work")
-    with pytest.raises(OutputError, match=r"holds 'thesis.txt', which is no result of a run"):
+    with pytest.raises(OutputError, match=r"holds 'thesis.txt', which is not of those results"):
         write_results(tmp_path, *run_of("heater"), force=True)
     assert os.listdir(tmp_path) == ["thesis.txt"]
 
