@@ -1,6 +1,8 @@
 """What the README shows is what happens."""
 
+import json
 import re
+import shlex
 import subprocess
 import sys
 from pathlib import Path
@@ -17,7 +19,7 @@ def thermal(*words: str, folder: Path) -> subprocess.CompletedProcess[str]:
 
 
 def test_the_quoted_answer_is_the_answer_of_the_example(tmp_path):
-    quoted = " ".join(line[2:] for line in README.splitlines() if line.startswith("> "))
+    quoted = quote(README.split("## Three questions")[0])
     done = thermal("run", str(ROOT / "cases/billet_forging.toml"), "--quiet", folder=tmp_path)
     assert done.returncode == 0, done.stderr
     assert done.stdout.strip() == quoted
@@ -25,12 +27,27 @@ def test_the_quoted_answer_is_the_answer_of_the_example(tmp_path):
     assert {path.name for path in (tmp_path / "results/billet_forging").iterdir()} == listed | {"case.toml"}
 
 
+def quote(text):
+    return " ".join(line[2:] for line in text.splitlines() if line.startswith("> "))
+
+
+def test_the_three_questions_answer_what_is_quoted(tmp_path):
+    asked = README.split("## Three questions")[1].split("## Commands")[0]
+    parts = re.split(r"^    thermal ", asked, flags=re.MULTILINE)[1:]
+    assert len(parts) == 3
+    for part in parts:
+        words = shlex.split(part.splitlines()[0].replace("cases/", f"{ROOT}/cases/"))
+        done = thermal(*words, "--json", folder=tmp_path)
+        assert done.returncode == 0, done.stderr
+        assert json.loads(done.stdout)["sentence"] == quote(part)
+
+
 COMMANDS = re.findall(r"^\| `thermal (.*?)` \|", README, flags=re.MULTILINE)
 LONG = {"verify my.toml"}
 
 
 def test_the_commands_of_the_table_work(tmp_path):
-    assert len(COMMANDS) == 8
+    assert len(COMMANDS) == 13
     for command in COMMANDS:
         if command not in LONG:
             works(command, tmp_path)
@@ -51,7 +68,8 @@ def works(command, folder):
 
 
 def test_the_python_lines_work(monkeypatch):
-    lines = README.split("From Python:")[1].split("##")[0].strip()
+    text = README.split("From Python:")[1].split("##")[0]
+    lines = "\n".join(line for line in text.splitlines() if line.startswith("    "))
     monkeypatch.chdir(ROOT)
     names: dict[str, object] = {}
     exec(re.sub(r"^    ", "", lines, flags=re.MULTILINE), names)

@@ -1,35 +1,30 @@
 """Speed of the own solver beside general libraries on the reference problems, at errors that can be compared.
 
 Error: largest deviation of surface and core, at the steps taken, from one run at 1 mK, over the whole history. Times
-are of one thread, best of several rounds; in a round everything has its turn, so that what else the machine does hits
-all alike.
+are of one thread, best of several rounds.
 """
 
-import math
 import platform
 import subprocess
 import sys
 import time
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import partial
 from pathlib import Path
 
-import numpy as np
-
 from thermal.build import build
-from thermal.case import load_case
+from thermal.case import Case, load_case
+from thermal.crosscheck.bench_questions import QuestionTime, time_questions
+from thermal.crosscheck.bench_sweep import SweepBench, extrapolated, measure_sweep
 from thermal.crosscheck.reference_problems import p1, p1s
-from thermal.crosscheck.rivals import Entrant, Outcome, PlainBar, missing_libraries, rivals
+from thermal.crosscheck.rivals import FIPY, Outcome, PlainBar, deviation, missing_libraries, rivals
+from thermal.crosscheck.timing import Announce, Effort, Entrant, Timing, nearest_in_error, time_all
 from thermal.loop import run
-from thermal.results.dense import sample
-from thermal.results.history import History
 from thermal.setup import Setup
 
 TOLERANCES = (0.03, 0.1, 0.3, 1.0)
 TIGHT = 1e-3
-COMPARABLE = 2.0
-"""Two times are compared where the errors differ by no more than this factor."""
 OWN = "this solver"
 USUAL = 0.1
 """Tolerance [K] of a case that says nothing else."""
@@ -41,20 +36,6 @@ COLD_RUN = (
     "print(history.time[-1], history.readings['surface'][-1], history.readings['core'][-1])\n"
 )
 COLD_NUMPY = "import numpy\n"
-
-CLOCK = time.perf_counter if sys.platform == "win32" else time.process_time
-"""Processor time, which other work on the machine leaves alone; wall-clock time where that ticks too coarsely."""
-
-Announce = Callable[[str], None]
-
-
-@dataclass(frozen=True)
-class Effort:
-    """How often everything has its turn, unless it has taken so long already [s]."""
-
-    rounds: int
-    patience: float
-
 
 THOROUGH, QUICK = Effort(7, 2.0), Effort(2, 0.5)
 
@@ -69,14 +50,6 @@ class ReferenceProblem:
 
 
 PROBLEMS = (ReferenceProblem("P1s", p1s, True), ReferenceProblem("P1", p1, False))
-
-
-@dataclass(frozen=True)
-class Timing:
-    """Best time [s] of so many turns."""
-
-    seconds: float
-    turns: int
 
 
 @dataclass(frozen=True)
@@ -123,10 +96,12 @@ class ColdStart:
 
 @dataclass(frozen=True)
 class Benchmark:
-    """Everything measured; missing : libraries that are not installed."""
+    """Everything measured; questions : put to the case ; missing : libraries that are not installed."""
 
     rows: tuple[Measured, ...]
+    sweep: SweepBench
     case: CaseTime | None
+    questions: tuple[QuestionTime, ...]
     cold: ColdStart
     missing: tuple[str, ...]
     processor: str
@@ -143,12 +118,27 @@ def measure(case: Path | None, quick: bool, announce: Announce) -> Benchmark:
     CaseError, MaterialError, NoConvergence, BalanceError : of the case.
     """
     effort = QUICK if quick else THOROUGH
-    timed = None if case is None else time_case(case, effort, announce)
+    timed, questions = None, tuple[QuestionTime, ...]()
+    if case is not None:
+        loaded = load_case(case)
+        timed = time_case(loaded, effort, announce)
+        questions = time_questions(loaded, effort, announce)
     rows: list[Measured] = []
     for each in PROBLEMS:
         rows += measure_problem(each, effort, quick, announce)
     missing = () if quick else missing_libraries()
-    return Benchmark(tuple(rows), timed, cold_start(effort, announce), missing, processor())
+    swept = with_fipy(measure_sweep(effort.rounds, quick, announce), rows)
+    return Benchmark(tuple(rows), swept, timed, questions, cold_start(effort, announce), missing, processor())
+
+
+def with_fipy(swept: SweepBench, rows: Sequence[Measured]) -> SweepBench:
+    """The sweep with the FiPy script beside it, where that has run P1."""
+    loops = [
+        extrapolated(row.solver, row.setting, row.timing.seconds, row.error, swept.runs)
+        for row in rows
+        if row.solver == FIPY and row.problem == "P1"
+    ]
+    return replace(swept, rivals=(*swept.rivals, *loops))
 
 
 def measure_problem(each: ReferenceProblem, effort: Effort, quick: bool, announce: Announce) -> list[Measured]:
@@ -184,59 +174,23 @@ def own_run(setup: Setup) -> Outcome:
     )
 
 
-def deviation(outcome: Outcome, setup: Setup, exact: History) -> float:
-    """Largest deviation of surface and core [K] from an exact run of setup, at the steps of the outcome."""
-    # A run that ends on a temperature may pass the end of the exact one by milliseconds.
-    inside = outcome.time <= exact.time[-1]
-    at = sample(setup, exact, np.zeros(int(inside.sum()), dtype=int), outcome.time[inside])
-    surface, core = (series[inside] for series in outcome.readings())
-    off = (np.abs(surface - at.readings["surface"]).max(), np.abs(core - at.readings["core"]).max())
-    return float(max(off))
-
-
 def comparison(rival: Measured, rows: Sequence[Measured]) -> tuple[Measured, float] | None:
     """The own run whose error is nearest to a rival's, and how many times as long the rival takes.
 
     None where even that error differs by more than a factor of two: then times say nothing.
     """
     own = [row for row in rows if row.own and row.problem == rival.problem]
-    nearest = min(own, key=lambda row: abs(math.log(row.error / rival.error)))
-    if max(nearest.error, rival.error) > COMPARABLE * min(nearest.error, rival.error):
-        return None
-    return nearest, rival.timing.seconds / nearest.timing.seconds
+    place = nearest_in_error(rival.error, [row.error for row in own])
+    return None if place is None else (own[place], rival.timing.seconds / own[place].timing.seconds)
 
 
-def time_all(entrants: Sequence[Entrant], effort: Effort, announce: Announce) -> list[tuple[Timing, Outcome]]:
-    """Best times of entrants that have their turns one after the other, and what they came to."""
-    best = [math.inf] * len(entrants)
-    spent = [0.0] * len(entrants)
-    turns = [0] * len(entrants)
-    outcomes: list[Outcome] = []
-    for number in range(effort.rounds):
-        for i, entrant in enumerate(entrants):
-            if spent[i] > effort.patience:
-                continue
-            if number == 0:
-                announce(f"{entrant.solver}, {entrant.setting}")
-            began = CLOCK()
-            outcome = entrant.work()
-            took = CLOCK() - began
-            if number == 0:
-                outcomes.append(outcome)
-            best[i] = min(best[i], took)
-            spent[i] += took
-            turns[i] += 1
-    return [(Timing(*each), outcome) for each, outcome in zip(zip(best, turns, strict=True), outcomes, strict=True)]
-
-
-def time_case(path: Path, effort: Effort, announce: Announce) -> CaseTime:
+def time_case(case: Case, effort: Effort, announce: Announce) -> CaseTime:
     """A case of the user beside P1 at 0.1 K.
 
     Raises
     ------
     CaseError, MaterialError, NoConvergence, BalanceError : of the case.
     """
-    case = load_case(path)
     entrants = [
         Entrant(case.name, "as written", partial(own_run, build(case))),
         Entrant("P1", f"{USUAL:g} K", partial(own_run, p1(USUAL))),

@@ -16,8 +16,11 @@ from scipy.integrate import solve_ivp
 
 from thermal.constants import STEFAN_BOLTZMANN
 from thermal.crosscheck.reference_problems import STEEL, T_START
+from thermal.crosscheck.timing import Entrant
 from thermal.errors import NoConvergence
 from thermal.interfaces import Array
+from thermal.results.dense import sample
+from thermal.results.history import History
 from thermal.setup import Setup
 
 EMISSIVITY, CONVECTION = 0.8, 10.0
@@ -25,6 +28,7 @@ NODES_PER_NODE = 4
 """Nodes of cp(T) for one of T(H), or the heat in the peak is 0.1 K too large."""
 SCALE = 1e3
 """Absolute tolerance over the relative one [K]: what is allowed is rtol (T + 1000 K)."""
+FIPY = "FiPy script"
 OPTIONAL = {"FiPy": "fipy", "scikit-sundae": "sksundae"}
 """Libraries that are not always installed: name for people -> module."""
 
@@ -42,13 +46,14 @@ class Outcome:
     readings: Callable[[], tuple[Array, Array]]
 
 
-@dataclass(frozen=True)
-class Entrant:
-    """One way to integrate a reference problem, in words and as work to be done anew at every call."""
-
-    solver: str
-    setting: str
-    work: Callable[[], Outcome]
+def deviation(outcome: Outcome, setup: Setup, exact: History) -> float:
+    """Largest deviation of surface and core [K] from an exact run of setup, at the steps of the outcome."""
+    # A run that ends on a temperature may pass the end of the exact one by milliseconds.
+    inside = outcome.time <= exact.time[-1]
+    at = sample(setup, exact, np.zeros(int(inside.sum()), dtype=int), outcome.time[inside])
+    surface, core = (series[inside] for series in outcome.readings())
+    off = (np.abs(surface - at.readings["surface"]).max(), np.abs(core - at.readings["core"]).max())
+    return float(max(off))
 
 
 class PlainBar:
@@ -120,14 +125,18 @@ def loss_flux(T_surface: float) -> float:
     return EMISSIVITY * STEFAN_BOLTZMANN * (T_surface**4 - T_START**4) + CONVECTION * (T_surface - T_START)
 
 
-def by_scipy(bar: PlainBar, end: float, method: str, rtol: float, banded: bool = False) -> Outcome:
-    """solve_ivp with its own Jacobian by differences, or told that it is tridiagonal (LSODA only)."""
+def by_scipy(bar: PlainBar, end: float, method: str, rtol: float | None, banded: bool = False) -> Outcome:
+    """solve_ivp with its own Jacobian by differences, or told that it is tridiagonal (LSODA only).
+
+    rtol : None leaves both tolerances to solve_ivp.
+    """
     band = {"lband": 1, "uband": 1} if banded else {}
+    tolerances = {} if rtol is None else {"rtol": rtol, "atol": SCALE * rtol}
     before = bar.evaluations
     start = np.full(bar.mesh.r.size, T_START)
-    found = solve_ivp(bar.rates, (0.0, end), start, method=method, rtol=rtol, atol=SCALE * rtol, **band)
+    found = solve_ivp(bar.rates, (0.0, end), start, method=method, **tolerances, **band)
     if not found.success:
-        raise NoConvergence(f"{method} at rtol {rtol:g} gave up: {found.message}")
+        raise NoConvergence(f"{method} at {rtol_in_words(rtol)} gave up: {found.message}")
     return bar.outcome(found.t, found.y.T, bar.evaluations - before)
 
 
@@ -158,15 +167,15 @@ def missing_libraries() -> tuple[str, ...]:
     return tuple(name for name, module in OPTIONAL.items() if find_spec(module) is None)
 
 
-def rivals(bar: PlainBar, end: float, quick: bool) -> list[Entrant]:
+def rivals(bar: PlainBar, end: float, quick: bool) -> list[Entrant[Outcome]]:
     """Everything there is to hold against, of the libraries installed; quick : solve_ivp with BDF and LSODA only."""
-    found = []
+    found: list[Entrant[Outcome]] = []
 
     def add_scipy(method: str, rtols: tuple[float, ...], banded: bool = False) -> None:
         name = f"SciPy {method}{' banded' if banded else ''}"
         for rtol in rtols:
             work = partial(by_scipy, bar, end, method, rtol, banded)
-            found.append(Entrant(name, _in_words(rtol), work))
+            found.append(Entrant(name, rtol_in_words(rtol), work))
 
     fine = (1e-4, 3e-5, 1e-5, 3e-6)
     add_scipy("BDF", fine)
@@ -178,11 +187,12 @@ def rivals(bar: PlainBar, end: float, quick: bool) -> list[Entrant]:
     missing = missing_libraries()
     if "scikit-sundae" not in missing:
         for rtol in (*fine, 1e-6):
-            found.append(Entrant("CVODE banded", _in_words(rtol), partial(by_cvode, bar, end, rtol)))
+            found.append(Entrant("CVODE banded", rtol_in_words(rtol), partial(by_cvode, bar, end, rtol)))
     if "FiPy" not in missing:
-        found.append(Entrant("FiPy script", "1.5 K a step", partial(by_fipy, bar, end)))
+        found.append(Entrant(FIPY, "1.5 K a step", partial(by_fipy, bar, end)))
     return found
 
 
-def _in_words(rtol: float) -> str:
-    return f"rtol {rtol:.0e}".replace("e-0", "e-")
+def rtol_in_words(rtol: float | None) -> str:
+    """A relative tolerance as the tables have it; None: left to the library."""
+    return "defaults" if rtol is None else f"rtol {rtol:.0e}".replace("e-0", "e-")

@@ -3,10 +3,11 @@
 import numpy as np
 import pytest
 
-from thermal.crosscheck import bench, rivals
-from thermal.crosscheck.bench import OWN, Effort, Measured, Timing, comparison, deviation, own_run, time_all
+from thermal.crosscheck import rivals, timing
+from thermal.crosscheck.bench import OWN, Measured, comparison, own_run
 from thermal.crosscheck.reference_problems import LOSSES, STEEL, T_START, bar, largest_error, p1, p1s
-from thermal.crosscheck.rivals import Entrant, Outcome, PlainBar, by_cvode, by_fipy, by_scipy, loss_flux
+from thermal.crosscheck.rivals import Outcome, PlainBar, by_cvode, by_fipy, by_scipy, deviation, loss_flux
+from thermal.crosscheck.timing import Effort, Entrant, Timing, time_all
 from thermal.loop import run
 
 
@@ -33,7 +34,7 @@ def test_nothing_is_compared_beyond_a_factor_of_two(error):
 def test_everything_has_its_turn_and_the_slow_one_gives_up_its_later_ones(monkeypatch):
     clock = 0.0
     called = []
-    monkeypatch.setattr(bench, "CLOCK", lambda: clock)
+    monkeypatch.setattr(timing, "CLOCK", lambda: clock)
 
     def entrant(name, times):
         left = iter(times)
@@ -49,7 +50,7 @@ def test_everything_has_its_turn_and_the_slow_one_gives_up_its_later_ones(monkey
     told = []
     timed = time_all([entrant("a", [3.0, 1.0, 2.0]), entrant("b", [6.0])], Effort(3, 5.0), told.append)
     assert called == ["a", "b", "a", "a"]
-    assert [timing for timing, _ in timed] == [Timing(1.0, 3), Timing(6.0, 1)]
+    assert [best for best, _ in timed] == [Timing(1.0, 3), Timing(6.0, 1)]
     assert [outcome.evaluations for _, outcome in timed] == [1, 2]
     assert told == ["a, ", "b, "]
 
