@@ -23,7 +23,7 @@ SAFETY = 0.85
 STEP_AT_LEAST = 1e-9
 LANDINGS_AT_MOST = 30
 HOLDING_AT_MOST = 1.0
-"""Largest tolerance of a step under a controller [K]: coarser, one that is quick and often off books too much energy."""
+"""Largest tolerance of a step under a controller [K]: in coarser ones a quick controller books too much energy."""
 NEARLY_ON = 1.0
 """A controller counts as about to ask for power within this many kelvin."""
 LANDING = 1e-3

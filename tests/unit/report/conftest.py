@@ -17,7 +17,7 @@ METALS = ("steel-c45", "aluminium-6082", "copper", "stainless-304", "brass-cuzn3
 ROW = {"workpiece.neighbours": "touching", "workpiece.length": "40 mm"}
 LONG = {"title": "A long title about the bar, the coil and the press that goes on " * 4}
 WEAK = {"schedule.0.drive": '{ coil_current = "120 A" }'}
-BURNS = {"schedule.0.drive.absorbed_power": "9 kW"}
+BURNS = {"workpiece.material": "stainless-304", "schedule.0.drive.absorbed_power": "3 kW"}
 LIMITED = {"supply.max_current": "300 A"}
 NO_REACH = {"schedule.0.drive.absorbed_power": "60 W"}
 # A rod that stalls at its Curie point: at this voltage the drive is too weak for a while below it.
@@ -55,7 +55,7 @@ ASKED: dict[str, tuple[str, dict[str, str], Ask]] = {
     "time in a row": ("tube", ROW, lambda case: time_to_temperature(case, ZERO + 700.0)),
     "time never": ("heater", NO_REACH, lambda case: time_to_temperature(case, ZERO + 1100.0)),
     "time, limited": ("tube", LIMITED, lambda case: time_to_temperature(case, ZERO + 1200.0)),
-    "time, burnt": ("heater", BURNS, lambda case: time_to_temperature(case, ZERO + 1400.0)),
+    "time, burnt": ("quick", BURNS, lambda case: time_to_temperature(case, ZERO + 1390.0)),
     "peak": ("tube", LONG, lambda case: peak_temperature(case, supply_power=1e3)),
     "peak in a row": ("tube", ROW, lambda case: peak_temperature(case, supply_power=1e3)),
     "peak of a plate": ("plate", {}, lambda case: peak_temperature(case, supply_power=2e3)),

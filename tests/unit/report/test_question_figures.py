@@ -164,7 +164,7 @@ def test_narrow_and_wide_windows_stay_clear(answer_of, lower, upper):
         demand_clear(drawn(replace(answer, result=window)))
 
 
-@pytest.mark.parametrize("name", ["time", SETTLED, "compare two", "frequency without a coil"])
+@pytest.mark.parametrize("name", [SETTLED, "compare two", "frequency without a coil"])
 def test_the_same_answer_gives_the_same_pictures(answer_of, name, tmp_path):
     answer, case = answer_of(name)
     for folder in ("first", "second"):

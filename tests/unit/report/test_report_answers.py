@@ -171,11 +171,12 @@ def test_what_a_metal_needs_that_never_gets_there_is_left_out(answer_of):
 
 def test_a_piece_that_burns_on_the_way_is_no_success(answer_of):
     answer, _ = answer_of("time, burnt")
-    assert answer.sentence.endswith("passes the solidus 1430 °C: the piece burns or melts there.")
+    assert answer.sentence.endswith("passes the solidus 1400 °C: the piece burns or melts there.")
     assert answer.result.time is not None
     assert not answer.met
 
 
+@pytest.mark.slow
 def test_a_state_of_rest_above_the_solidus_is_no_success():
     case = from_text(starter("heater"), ".")
     cool, hot = (peak_temperature(case, absorbed_power=watts) for watts in (1000.0, 1150.0))

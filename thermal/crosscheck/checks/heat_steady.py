@@ -163,7 +163,9 @@ def _resting(full: bool) -> Iterator[Row]:
     inside = mesh.r < 0.01
     core = PrescribedSource(mesh, lambda T, excitation: np.where(inside, 1e7, 0.0))
     history = _at_rest(mesh, core, 250.0, lambda T: np.where(inside, 15.0, 45.0))
-    yield COMPOSITE.relative("centre minus surface, of two parts", 24.368302006221615, -last(history, "spread"), "K", 1e-4)
+    yield COMPOSITE.relative(
+        "centre minus surface, of two parts", 24.368302006221615, -last(history, "spread"), "K", 1e-4
+    )
 
 
 def _tube_at_rest(cells: int) -> History:
