@@ -19,8 +19,8 @@ from thermal.results.history import History
 
 TOLERANCE = 0.1
 """[K] of the runs."""
-SAME = 0.05
-"""Tolerances between runs that step alike (measured 0.001 in 600)."""
+SAME = 0.5
+"""Tolerances between runs that step alike (measured 0.2 in 600)."""
 SPLIT = 4.0
 """Tolerances between runs that step differently (measured 3.3 in 400)."""
 LONE_HEAT = (("heat",),)

@@ -3,10 +3,23 @@
 from collections import Counter
 
 from hypothesis import given, settings
-from whole_cases import ACROSS, ALLOYS, BY_COIL, DIRECT, FEW, FREQUENCY, GASES, LININGS, RATIO, Drawn, whole_cases
+from whole_cases import (
+    ACROSS,
+    ALLOYS,
+    BY_COIL,
+    DIRECT,
+    FEW,
+    FREQUENCY,
+    GASES,
+    LININGS,
+    RATIO,
+    Drawn,
+    case_of,
+    whole_cases,
+)
 
 import materials
-from thermal.case import Case, from_text
+from thermal.case import Case
 from thermal.case.schema import Heat, Hold, Plate, Tube
 
 DRAWS = 1000
@@ -54,7 +67,7 @@ def test_ranges_of_the_cases_at_random() -> None:
     @settings(FEW, max_examples=DRAWS)
     @given(whole_cases())
     def draw(drawn: Drawn) -> None:
-        case = from_text(drawn.text, ".")
+        case = case_of(drawn.document)
         ratios.append(drawn.ratio)
         frequencies.append(case.supply.frequency if case.supply is not None else case.frequency(len(case.schedule) - 1))
         sizes.append(across(case))

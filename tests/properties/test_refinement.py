@@ -76,13 +76,13 @@ def test_tighter_tolerances(drawn: Drawn) -> None:
 
 @pytest.mark.slow
 @given(drawn=cases)
-@settings(MANY, max_examples=100)
+@settings(MANY, max_examples=12)
 def test_finer_grids_of_many(drawn: Drawn) -> None:
     finer_grids(drawn.document, 0.03)
 
 
 @pytest.mark.slow
 @given(drawn=cases)
-@settings(MANY, max_examples=100)
+@settings(MANY, max_examples=12)
 def test_tighter_tolerances_of_many(drawn: Drawn) -> None:
     tighter_tolerances(drawn.document)

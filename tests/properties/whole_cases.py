@@ -16,7 +16,7 @@ from hypothesis import strategies as st
 from materials import database
 from materials.material import Material
 from thermal.build import build
-from thermal.case import from_text
+from thermal.case import Case, from_text
 from thermal.case.write import to_toml
 from thermal.constants import MU_0
 from thermal.eddy.exact import plate_impedance, skin_depth
@@ -58,7 +58,7 @@ PLANS = (
 
 FEW = settings(max_examples=12, deadline=None, derandomize=True, database=None)
 """Of the fast tests: the same examples every time."""
-MANY = settings(FEW, max_examples=300)
+MANY = settings(FEW, max_examples=80)
 """Of the slow ones."""
 
 
@@ -68,11 +68,6 @@ class Drawn:
 
     document: Document
     ratio: float
-
-    @property
-    def text(self) -> str:
-        """The case as a file."""
-        return to_toml(self.document)
 
 
 @dataclass(frozen=True)
@@ -364,8 +359,13 @@ def _seconds(value: float) -> str:
     return written(max(value, 1e-3), "s")
 
 
-def setup_of(document: Document, folder: str = ".") -> Setup:
-    """The parts of a run of a document; shown where the example fails."""
+def case_of(document: Document, folder: str = ".") -> Case:
+    """The case of a document; shown where the example fails."""
     text = to_toml(document)
     note(text)
-    return build(from_text(text, folder))
+    return from_text(text, folder)
+
+
+def setup_of(document: Document, folder: str = ".") -> Setup:
+    """The parts of a run of a document."""
+    return build(case_of(document, folder))
