@@ -35,6 +35,8 @@ FIELD = (1e3, 3e5)
 """[A/m] rms at the surface."""
 FLUX = (3e3, 2e7)
 """[W/m2] into the surface."""
+MOST_AMPERE = 1e5
+"""[A] rms in the coil."""
 VOLTAGE = (0.01, 10e3)
 """[V] rms at the coil."""
 
@@ -258,7 +260,7 @@ def _coil(draw: Draw, aim: Aim, room: float) -> Document:
 
 
 def _ampere(aim: Aim, coil: Document) -> float:
-    return aim.field * float(coil["length"].split()[0]) / 1e3 / float(coil["turns"])
+    return min(aim.field * float(coil["length"].split()[0]) / 1e3 / float(coil["turns"]), MOST_AMPERE)
 
 
 def _volt(aim: Aim, coil: Document) -> float:
